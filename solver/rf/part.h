@@ -10,7 +10,9 @@
 namespace bandwright {
 
 // Any value at all, as for a trimmed or printed part.
-struct AnyValue {};
+struct AnyValue {
+  bool operator==(const AnyValue&) const = default;
+};
 using ValueRule = std::variant<AnyValue, Series, std::vector<double>>;
 
 // Half-width of the spread of a value, relative to it or absolute (in its SI unit).
@@ -18,6 +20,7 @@ struct Tolerance {
   double relative = 0;
   double absolute = 0;  // wins when above 0
   double half_width(double value) const { return absolute > 0 ? absolute : relative * value; }
+  bool operator==(const Tolerance&) const = default;
 };
 
 // Q(f) = value * (f / at_hz) ^ exponent.
@@ -26,6 +29,7 @@ struct QualityFactor {
   double at_hz = 1;
   double exponent = 0;
   double at(double frequency_hz) const;
+  bool operator==(const QualityFactor&) const = default;
 };
 
 // A part for one value of an element.
@@ -43,6 +47,7 @@ struct Part {
   double self_inductance_h = 0;
 
   bool lossless() const { return !q && esr_ohm == 0; }
+  bool operator==(const Part&) const = default;
 };
 
 // The values `part` offers in [min, max], increasing; empty for AnyValue.

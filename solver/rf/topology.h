@@ -24,6 +24,7 @@ struct ValueRange {
   double min = 0;
   double max = 0;
   bool fixed() const { return min == max; }
+  bool operator==(const ValueRange&) const = default;
 };
 
 struct Slot {
