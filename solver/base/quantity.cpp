@@ -6,6 +6,8 @@
 #include <cmath>
 #include <optional>
 
+#include "solver/base/decimal.h"
+
 namespace bandwright {
 namespace {
 
@@ -149,25 +151,6 @@ std::string near_miss(std::string_view text, const UnitEntry& wanted) {
   return {};
 }
 
-// The double closest to `number` times 10^shift, so that "3.3 nH" is exactly 3.3e-9.
-std::optional<double> scaled(std::string_view number, int shift) {
-  const std::size_t mark = number.find_first_of("eE");
-  long exponent = 0;
-  if (mark != std::string_view::npos) {
-    std::string_view digits = number.substr(mark + 1);
-    if (digits.starts_with('+')) digits.remove_prefix(1);
-    if (std::from_chars(digits.data(), digits.data() + digits.size(), exponent).ec != std::errc{}) {
-      return std::nullopt;
-    }
-  }
-  const std::string text =
-      std::string(number.substr(0, mark)) + "e" + std::to_string(exponent + shift);
-  double value = 0;
-  const auto read = std::from_chars(text.data(), text.data() + text.size(), value);
-  if (read.ec != std::errc{} || !std::isfinite(value)) return std::nullopt;
-  return value;
-}
-
 std::string unit_fault(std::string_view found, const UnitEntry& wanted) {
   const std::string wish = ", wanted " + std::string(wanted.wanted);
   if (const std::string meant = near_miss(found, wanted); !meant.empty()) {
@@ -220,7 +203,7 @@ Result<double, std::string> parse_quantity(std::string_view text, Unit unit) {
     if (!parsed || parsed->unit != unit) return unit_fault(rest, wanted);
     exponent = parsed->exponent;
   }
-  const auto value = plain == 0 && read.ec == std::errc{} ? plain : scaled(number, exponent);
+  const std::optional<double> value = read_decimal(number, exponent);
   if (!value) return "found " + quoted(text) + ", which is too large or too small a number";
   return *value;
 }

@@ -13,7 +13,20 @@
 
 namespace bandwright {
 
-enum class Unit { hertz, ohm, henry, farad, siemens, metre, watt, volt, ampere, decibel, second, none };
+enum class Unit {
+  hertz,
+  ohm,
+  henry,
+  farad,
+  siemens,
+  metre,
+  watt,
+  volt,
+  ampere,
+  decibel,
+  second,
+  none
+};
 
 // "Hz", "ohm", "H", ...; empty for Unit::none.
 std::string_view unit_symbol(Unit unit);
