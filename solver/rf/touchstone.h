@@ -14,8 +14,8 @@ namespace bandwright {
 // Scattering data of an N-port, whatever parameter the text held.
 struct NetworkData {
   int ports = 0;
-  std::vector<double> frequency_hz;    // F values, strictly increasing
-  std::vector<double> reference_ohm;   // `ports` values
+  std::vector<double> frequency_hz;   // F values, strictly increasing
+  std::vector<double> reference_ohm;  // `ports` values
   // F * ports * ports values; S(row, column) of point k is at (k * ports + row) * ports + column.
   std::vector<Complex> scattering;
 
