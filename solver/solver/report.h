@@ -47,7 +47,7 @@ struct ElementStress {
 };
 
 // A response table over the goal bands' span, for the first load state.
-struct Response {
+struct ResponseTable {
   std::vector<double> frequency_hz;
   std::vector<double> return_loss_db;
   std::vector<double> s11_re, s11_im;
@@ -72,7 +72,7 @@ struct Design {
   std::vector<ElementShare> sensitivity;  // empty without Monte Carlo
   std::vector<ElementStress> stress;
   double efficiency_db = 0;  // worst over the goal bands: power into the load over power accepted
-  Response response;
+  ResponseTable response;
 };
 
 struct Unmatched {
