@@ -2,12 +2,14 @@
 
 #include <spdlog/logger.h>
 
+#include <algorithm>
 #include <boost/asio/co_spawn.hpp>
 #include <boost/asio/post.hpp>
 #include <exception>
 #include <utility>
 #include <variant>
 
+#include "server/http/field_list.h"
 #include "server/http/head_validator.h"
 #include "server/http/log_line.h"
 #include "server/http/response_head.h"
@@ -121,6 +123,10 @@ asio::awaitable<void> Session::answer_refused() {
   Exchange refused;
   refused.id = context_.ids.next();
   Response busy = fault(503, "too many open connections", refused);
+  const auto is_retry = [](const HeaderField& f) { return ascii_lower(f.name) == "retry-after"; };
+  if (std::none_of(busy.headers.begin(), busy.headers.end(), is_retry)) {
+    busy.headers.push_back({"Retry-After", "1"});
+  }
   co_await send(refused, std::move(busy));
   co_await connection_->linger();
 }
