@@ -29,6 +29,9 @@ class Ladder {
   Scratch make_scratch() const;
   int slots() const { return static_cast<int>(reciprocal_.size()); }
   const PointSet& points() const { return *points_; }
+  // One slot's kernel step, and the factor that a value has in it.
+  const KernelStep& step(int slot) const { return steps_[slots() - 1 - slot]; }
+  double factor(int slot, double value) const { return reciprocal_[slot] ? 1 / value : value; }
 
   // The worst weighted margin over all points, dB. Not finite only if `values` overflow.
   double margin_db(const double* values, Scratch& scratch) const;

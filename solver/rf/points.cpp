@@ -6,8 +6,10 @@
 namespace bandwright {
 namespace {
 
-// Below this share of the wave's size a load counts as taking in no power.
+// Below this share of the wave's size a load counts as taking in no power, and its wave is scaled
+// so that the gain reads about -160 dB.
 constexpr double kNoPower = 1e-14;
+constexpr double kNoPowerScale = 1e8;
 
 int padded_count(std::size_t count) {
   return static_cast<int>((count + kLanes - 1) / kLanes * kLanes);
@@ -22,7 +24,10 @@ ScaledWave scaled_wave(const OnePort& load, double frequency_hz, Complex source_
   Wave wave = load.wave(frequency_hz);
   const double power = (wave.voltage * std::conj(wave.current)).real();
   const double size = std::abs(wave.voltage) * std::abs(wave.current);
-  if (!(power > kNoPower * size)) return {wave, false};
+  if (!(power > kNoPower * size)) {
+    const double scale = kNoPowerScale / std::sqrt(source_ohm.real() * size);
+    return {{wave.voltage * scale, wave.current * scale}, false};
+  }
   const double scale = 1 / std::sqrt(4 * source_ohm.real() * power);
   return {{wave.voltage * scale, wave.current * scale}, true};
 }
