@@ -152,17 +152,17 @@ std::string near_miss(std::string_view text, const UnitEntry& wanted) {
 }
 
 std::string unit_fault(std::string_view found, const UnitEntry& wanted) {
-  const std::string wish = ", wanted " + std::string(wanted.wanted);
-  if (const std::string meant = near_miss(found, wanted); !meant.empty()) {
-    return "found the unit " + quoted(found) + wish + "; did you mean \"" + meant + "\"?";
+  std::string fault = "found ";
+  if (read_unit(found)) {
+    fault += found;
+  } else if (std::any_of(found.begin(), found.end(), is_digit)) {
+    fault += quoted(found) + " after the number";
+  } else {
+    fault += quoted(found) + ", which is no unit known here";
   }
-  if (const auto other = read_unit(found)) {
-    return "found " + std::string(found) + wish;
-  }
-  if (std::any_of(found.begin(), found.end(), is_digit)) {
-    return "found " + quoted(found) + " after the number" + wish;
-  }
-  return "found " + quoted(found) + ", which is no unit known here" + wish;
+  fault += ", wanted " + std::string(wanted.wanted);
+  const std::string meant = near_miss(found, wanted);
+  return meant.empty() ? fault : fault + "; did you mean \"" + meant + "\"?";
 }
 
 }  // namespace
@@ -179,8 +179,9 @@ Result<double, std::string> parse_quantity(std::string_view text, Unit unit) {
   if (rest.empty()) return "found nothing, " + wish;
   if (text.size() > 200) return "found a text of more than 200 bytes, " + wish;
 
+  const bool is_signed = rest.starts_with('+') || rest.starts_with('-');
+  const std::string_view unsigned_rest = rest.substr(is_signed ? 1 : 0);
   if (rest.starts_with('+')) rest.remove_prefix(1);
-  const std::string_view unsigned_rest = rest.starts_with('-') ? rest.substr(1) : rest;
   // Asked here because from_chars would also read "inf" and "nan".
   if (unsigned_rest.empty() || (!is_digit(unsigned_rest.front()) && unsigned_rest.front() != '.')) {
     return "found " + quoted(text) + ", which does not start with a number; " + wish;
