@@ -72,10 +72,9 @@ Complex PointList::entry(const NumberWord& first, const NumberWord& second) {
     const double angle = std::fmod(second.value, 360.0) * std::numbers::pi / 180.0;
     value = {magnitude * std::cos(angle), magnitude * std::sin(angle)};
   }
-  if (!std::isfinite(value.real()) || !std::isfinite(value.imag())) {
-    faults_.add(first.line, "the value " + quoted_word(first.text) + " dB is too large");
-  }
-  return value;
+  if (std::isfinite(value.real()) && std::isfinite(value.imag())) return value;
+  faults_.add(first.line, "the value " + quoted_word(first.text) + " dB is too large");
+  return {kNaN, kNaN};
 }
 
 void PointList::add(std::span<const NumberWord> numbers) {

@@ -81,9 +81,6 @@ class Version2Scanner {
                   "several reference resistances belong to texts without keywords; wanted one "
                   "here and [Reference] for the ports");
     }
-    if (seen_.size() > 1) {
-      faults_.add(line.number, "the option line must follow [Version]");
-    }
   }
 
   void on_words(const TextLine& line) {
@@ -127,8 +124,7 @@ class Version2Scanner {
     const bool repeats =
         keyword == Keyword::begin_information || keyword == Keyword::end_information;
     if (!repeats && seen_.contains(keyword)) faults_.add(line, name + " stands here a second time");
-    if (keyword != Keyword::version && keyword != Keyword::begin_information && !header.options &&
-        !option_missed_) {
+    if (seen_.contains(Keyword::version) && !repeats && !header.options && !option_missed_) {
       faults_.add(line, "the option line must stand between [Version] and " + name);
       option_missed_ = true;
     }
