@@ -10,6 +10,7 @@
 #pragma once
 
 #include <chrono>
+#include <cstdint>
 #include <functional>
 #include <memory>
 #include <optional>
@@ -24,8 +25,8 @@ namespace bandwright {
 
 struct ExecutionResult {
   bool ok = true;
-  std::string result;          // when ok
-  std::string failure_code;    // when not
+  std::string result;        // when ok
+  std::string failure_code;  // when not
   std::string failure_detail;
 };
 
@@ -40,6 +41,9 @@ struct JobServiceOptions {
   int running_per_team = 2;
   std::chrono::seconds results_kept{7 * 24 * 3600};
   std::uint64_t min_free_bytes = 256ull << 20;
+  std::chrono::milliseconds purge_every{60'000};
+  // Told the job's id and what an executor threw; the caller of the service sees neither.
+  std::function<void(const std::string& id, const std::string& what)> on_internal_fault;
 };
 
 class JobService {

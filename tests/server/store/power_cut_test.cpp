@@ -78,7 +78,7 @@ Losses cut_power(int cuts, bool syncs_are_lies) {
     std::mt19937_64 random(static_cast<std::uint64_t>(losses.cuts));
     std::map<std::string, Promised> jobs;
     for (int i = 0; i < 8; ++i, ++losses.cuts) {
-      disk.cut_power_after(1 + static_cast<int>(random() % (random() % 4 ? 200 : 3000)));
+      disk.cut_power_after(1 + static_cast<int>(random() % (random() % 8 ? 200 : 1500)));
       {
         auto opened = Store::open(dir.path(), options_on(disk));
         if (opened.ok()) work_until_cut(**opened, random, jobs);
