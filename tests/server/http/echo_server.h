@@ -108,7 +108,7 @@ class EchoServer {
   // Complete after shutdown.
   std::string log() const { return log_.str(); }
   bool answers() {
-    const auto response = exchange(port(), "GET /ping HTTP/1.1\r\nHost: localhost\r\n\r\n");
+    const auto response = ask(port(), "GET /ping HTTP/1.1\r\nHost: localhost\r\n\r\n");
     return response && response->status == 200 && response->body == "GET /ping\n";
   }
 

@@ -91,7 +91,7 @@ TEST_CASE("the last request a connection may carry says close") {
 
 TEST_CASE("a body is accepted at its limit and refused unread one past it") {
   EchoServer echo;
-  const auto fits = exchange(echo.port(), post("/a", std::string(echo.handler.max_body, 'x')));
+  const auto fits = ask(echo.port(), post("/a", std::string(echo.handler.max_body, 'x')));
   REQUIRE(fits);
   CHECK(fits->status == 200);
 
@@ -116,8 +116,9 @@ TEST_CASE("a client that sends a refused body in full still sees the refusal") {
 TEST_CASE("a huge Content-Length is 413") {
   EchoServer echo;
   for (const char* length : {"18446744073709551615", "99999999999999999999999999"}) {
-    const auto response = exchange(echo.port(), "POST /a HTTP/1.1\r\nHost: a\r\nContent-Length: " +
-                                                    std::string(length) + "\r\n\r\nx");
+    const auto response =
+        ask(echo.port(),
+            "POST /a HTTP/1.1\r\nHost: a\r\nContent-Length: " + std::string(length) + "\r\n\r\nx");
     REQUIRE(response);
     CHECK(response->status == 413);
   }
@@ -145,10 +146,10 @@ TEST_CASE("a head is accepted at its limit and refused one past it, before it ha
     const std::string begin = "GET / HTTP/1.1\r\nHost: a\r\nX: ";
     return begin + std::string(size - begin.size() - 4, 'x') + "\r\n\r\n";
   };
-  CHECK(exchange(echo.port(), head(200))->status == 200);
-  CHECK(exchange(echo.port(), head(201))->status == 431);
-  CHECK(exchange(echo.port(), head(5000).substr(0, 4000))->status == 431);
-  CHECK(exchange(echo.port(), "GET /" + std::string(4000, 'a'))->status == 414);
+  CHECK(ask(echo.port(), head(200))->status == 200);
+  CHECK(ask(echo.port(), head(201))->status == 431);
+  CHECK(ask(echo.port(), head(5000).substr(0, 4000))->status == 431);
+  CHECK(ask(echo.port(), "GET /" + std::string(4000, 'a'))->status == 414);
 }
 
 TEST_CASE("the server says 100 only to a client that waits for it and may go on") {
@@ -184,7 +185,7 @@ TEST_CASE("a handler that throws, forgets or misnumbers its answer gives 500 wit
   for (const char* path : {"/throw", "/throw-int", "/throw-head", "/lose", "/status-42"}) {
     CAPTURE(path);
     const auto response =
-        exchange(echo.port(), "GET " + std::string(path) + " HTTP/1.1\r\nHost: a\r\n\r\n");
+        ask(echo.port(), "GET " + std::string(path) + " HTTP/1.1\r\nHost: a\r\n\r\n");
     REQUIRE(response);
     CHECK(response->status == 500);
     CHECK(response->body.find("purpose") == std::string::npos);
@@ -232,8 +233,8 @@ TEST_CASE("an answer given later from another thread arrives") {
 
 TEST_CASE("each request leaves one line in the log, and the faults too") {
   EchoServer echo;
-  exchange(echo.port(), kPing);
-  exchange(echo.port(), "GET /a\"b HTTP/1.1\r\nHost: a\r\n\r\n");
+  ask(echo.port(), kPing);
+  ask(echo.port(), "GET /a\"b HTTP/1.1\r\nHost: a\r\n\r\n");
   echo.server().shutdown(std::chrono::seconds(1));
   const std::string log = echo.log();
   CHECK(log.find(R"("method":"GET","path":"/ping","status":200)") != std::string::npos);

@@ -133,7 +133,7 @@ class TestClient {
 };
 
 // One request on a connection of its own.
-inline std::optional<TestResponse> exchange(std::uint16_t port, std::string_view request) {
+inline std::optional<TestResponse> ask(std::uint16_t port, std::string_view request) {
   TestClient client(port);
   client.send(request);
   return client.read_response();

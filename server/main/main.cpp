@@ -1,0 +1,5 @@
+#include "server/app/run.h"
+
+int main(int argc, char** argv) {
+  return bandwright::run(argc, argv);
+}
