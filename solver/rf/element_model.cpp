@@ -29,13 +29,18 @@ ElementModel capacitor_model(const Part& part, double frequency_hz) {
 
 }  // namespace
 
-bool uses_reciprocal(Kind kind) { return kind == Kind::capacitor; }
+bool uses_reciprocal(Kind kind) {
+  return kind == Kind::capacitor;
+}
 
 ElementModel element_model(Kind kind, const Part& part, double frequency_hz) {
   switch (kind) {
-    case Kind::inductor: return inductor_model(part, frequency_hz);
-    case Kind::capacitor: return capacitor_model(part, frequency_hz);
-    case Kind::resistor: break;
+    case Kind::inductor:
+      return inductor_model(part, frequency_hz);
+    case Kind::capacitor:
+      return capacitor_model(part, frequency_hz);
+    case Kind::resistor:
+      break;
   }
   return {1.0, Complex(0, 2 * std::numbers::pi * frequency_hz * part.self_inductance_h)};
 }

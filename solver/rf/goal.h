@@ -22,9 +22,12 @@ struct Goal {
 
   double margin_db(double value_db) const {
     switch (bound) {
-      case GoalBound::at_least: return weight * (value_db - bound_db);
-      case GoalBound::at_most: return weight * (bound_db - value_db);
-      case GoalBound::best: break;
+      case GoalBound::at_least:
+        return weight * (value_db - bound_db);
+      case GoalBound::at_most:
+        return weight * (bound_db - value_db);
+      case GoalBound::best:
+        break;
     }
     return weight * value_db;
   }

@@ -30,7 +30,9 @@ double return_loss_db(double reflection_magnitude) {
   return std::min(kPerfectReturnLossDb, -20.0 * std::log10(reflection_magnitude));
 }
 
-double reflection_from_return_loss_db(double loss_db) { return std::pow(10.0, -loss_db / 20.0); }
+double reflection_from_return_loss_db(double loss_db) {
+  return std::pow(10.0, -loss_db / 20.0);
+}
 
 double vswr(double reflection_magnitude) {
   return (1.0 + reflection_magnitude) / (1.0 - reflection_magnitude);

@@ -32,7 +32,9 @@ KernelStep::Op step_op(Place place, bool lossless, bool affine) {
   return series ? Op::series_linear : Op::shunt_linear;
 }
 
-double decibels(double power_ratio) { return 10 * std::log10(power_ratio); }
+double decibels(double power_ratio) {
+  return 10 * std::log10(power_ratio);
+}
 
 }  // namespace
 

@@ -36,7 +36,8 @@ class Ladder {
   // The worst weighted margin over all points, dB. Not finite only if `values` overflow.
   double margin_db(const double* values, Scratch& scratch) const;
   // A smooth stand-in for the margin: minus ten times the log of the power mean, with exponent
-  // `p` on the reflection, of every point's badness. Rises to the margin with p. `p` is 2, 4, 8, ...
+  // `p` on the reflection, of every point's badness. Rises to the margin with p. `p` is 2, 4, 8,
+  // ...
   double smooth_margin_db(const double* values, int p, Scratch& scratch) const;
   // The weighted margin of every point (padding included), dB, to `out`; returns the smallest.
   double point_margins_db(const double* values, double* out, Scratch& scratch) const;
@@ -51,7 +52,7 @@ class Ladder {
   std::vector<AlignedArray> tables_;  // behind the pointers in steps_
   std::vector<KernelStep> steps_;     // from the load to the source
   std::vector<KernelSegment> segments_;
-  std::vector<double> scale_;         // per segment: badness times this is 1 when just met
+  std::vector<double> scale_;  // per segment: badness times this is 1 when just met
   std::vector<double> weight_;
   bool equal_weights_ = true;
   KernelTask task_;

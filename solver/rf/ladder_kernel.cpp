@@ -34,11 +34,14 @@ HWY_INLINE V badness_of(const KernelTask& t, Badness badness, const State& s, in
   switch (badness) {
     case Badness::reflected_from_gain:
       return hn::Sub(one, hn::Div(one, delivered_reciprocal(t, s, at)));
-    case Badness::reflected: return hn::Div(returned(t, s, at), delivered_reciprocal(t, s, at));
+    case Badness::reflected:
+      return hn::Div(returned(t, s, at), delivered_reciprocal(t, s, at));
     case Badness::not_reflected:
       return hn::Div(delivered_reciprocal(t, s, at), returned(t, s, at));
-    case Badness::lost: return delivered_reciprocal(t, s, at);
-    case Badness::transferred: break;
+    case Badness::lost:
+      return delivered_reciprocal(t, s, at);
+    case Badness::transferred:
+      break;
   }
   return hn::Div(one, delivered_reciprocal(t, s, at));
 }
@@ -80,7 +83,9 @@ void points_impl(const KernelTask& task, const double* x, double* badness, doubl
   run<true>(task, x, badness, worst);
 }
 
-const char* name_impl() { return hwy::TargetName(HWY_TARGET); }
+const char* name_impl() {
+  return hwy::TargetName(HWY_TARGET);
+}
 
 }  // namespace HWY_NAMESPACE
 }  // namespace bandwright
@@ -101,7 +106,9 @@ void kernel_points(const KernelTask& task, const double* x, double* badness, dou
   HWY_DYNAMIC_DISPATCH(points_impl)(task, x, badness, worst);
 }
 
-const char* kernel_instruction_set() { return HWY_DYNAMIC_DISPATCH(name_impl)(); }
+const char* kernel_instruction_set() {
+  return HWY_DYNAMIC_DISPATCH(name_impl)();
+}
 
 }  // namespace bandwright
 #endif

@@ -21,12 +21,22 @@ HWY_INLINE C mul(C a, C b) {
   return {hn::NegMulAdd(a.im, b.im, hn::Mul(a.re, b.re)),
           hn::MulAdd(a.im, b.re, hn::Mul(a.re, b.im))};
 }
-HWY_INLINE C add(C a, C b) { return {hn::Add(a.re, b.re), hn::Add(a.im, b.im)}; }
-HWY_INLINE C sub(C a, C b) { return {hn::Sub(a.re, b.re), hn::Sub(a.im, b.im)}; }
-HWY_INLINE C neg(C a) { return {hn::Neg(a.re), hn::Neg(a.im)}; }
-HWY_INLINE V norm(C a) { return hn::MulAdd(a.re, a.re, hn::Mul(a.im, a.im)); }
+HWY_INLINE C add(C a, C b) {
+  return {hn::Add(a.re, b.re), hn::Add(a.im, b.im)};
+}
+HWY_INLINE C sub(C a, C b) {
+  return {hn::Sub(a.re, b.re), hn::Sub(a.im, b.im)};
+}
+HWY_INLINE C neg(C a) {
+  return {hn::Neg(a.re), hn::Neg(a.im)};
+}
+HWY_INLINE V norm(C a) {
+  return hn::MulAdd(a.re, a.re, hn::Mul(a.im, a.im));
+}
 // Re(conj(a) b).
-HWY_INLINE V inner(C a, C b) { return hn::MulAdd(a.re, b.re, hn::Mul(a.im, b.im)); }
+HWY_INLINE V inner(C a, C b) {
+  return hn::MulAdd(a.re, b.re, hn::Mul(a.im, b.im));
+}
 
 HWY_INLINE State load_state(const StateArrays& s, int at) {
   const D d;
@@ -56,7 +66,8 @@ HWY_INLINE Linear linear_in_pivot(const PivotTask& t, const State& s, int at) {
   if (op == Op::shunt_affine) {
     // Everything times the pivot's impedance k + w x.
     const C k{hn::LoadU(d, t.pivot.c + at), hn::LoadU(d, t.pivot.d + at)};
-    return {sub(mul(n, k), mul(zs_conj, v)), mul(n, w), add(mul(e, k), mul(zs, v)), mul(e, w), k, w};
+    return {
+        sub(mul(n, k), mul(zs_conj, v)), mul(n, w), add(mul(e, k), mul(zs, v)), mul(e, w), k, w};
   }
   if (op == Op::shunt_susceptance || op == Op::shunt_linear) {
     const C wv = mul(w, v);
@@ -138,8 +149,8 @@ namespace bandwright {
 HWY_EXPORT(interval_impl);
 HWY_EXPORT(advance_impl);
 
-void advance_state(const KernelStep& step, double x, const StateArrays& from,
-                   const StateArrays& to, int points) {
+void advance_state(const KernelStep& step, double x, const StateArrays& from, const StateArrays& to,
+                   int points) {
   HWY_DYNAMIC_DISPATCH(advance_impl)(step, x, from, to, points);
 }
 

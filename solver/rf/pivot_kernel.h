@@ -20,8 +20,8 @@ struct StateArrays {
 };
 
 struct PivotTask {
-  KernelStep pivot;        // the element next to the source
-  int points = 0;          // a multiple of kLanes
+  KernelStep pivot;  // the element next to the source
+  int points = 0;    // a multiple of kLanes
   const double *source_re = nullptr, *source_im = nullptr;
   const double *weight_n = nullptr, *weight_d = nullptr, *weight_0 = nullptr;
 };
@@ -33,8 +33,8 @@ struct FactorInterval {
 };
 
 // `to` = `from` with one more element.
-void advance_state(const KernelStep& step, double x, const StateArrays& from,
-                   const StateArrays& to, int points);
+void advance_state(const KernelStep& step, double x, const StateArrays& from, const StateArrays& to,
+                   int points);
 
 // The smallest interval known to hold every positive pivot factor that meets all points, when the
 // element `step` with factor `x` (null: none) stands between `state` and the pivot. Points whose

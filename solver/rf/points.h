@@ -32,8 +32,8 @@ struct PointSet {
   std::vector<double> frequency_hz;  // of every point, padding included
   AlignedArray voltage_re, voltage_im, current_re, current_im;
   AlignedArray source_re, source_im;
-  int points = 0;         // padding included
-  int real_points = 0;    // without padding
+  int points = 0;       // padding included
+  int real_points = 0;  // without padding
   bool source_real = true;
   bool load_passive = true;  // every load takes in real power; else gains read 0
 

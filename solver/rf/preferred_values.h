@@ -10,8 +10,8 @@ namespace bandwright {
 
 enum class Series { e3, e6, e12, e24, e48, e96, e192 };
 
-std::string_view series_name(Series series);                      // "E24"
-std::optional<Series> series_from_name(std::string_view name);    // exact, upper case
+std::string_view series_name(Series series);                    // "E24"
+std::optional<Series> series_from_name(std::string_view name);  // exact, upper case
 std::span<const Series> all_series();
 
 // The values of one decade, 1.0 <= value < 10, increasing.

@@ -173,8 +173,8 @@ class Enumeration {
     for (double value : lists_[slot]) {
       if (ended_) return;
       values_[slot] = value;
-      advance_state(screen_.step(slot), screen_.factor(slot, value), arrays(slot + 1),
-                    arrays(slot), screen_points_.points);
+      advance_state(screen_.step(slot), screen_.factor(slot, value), arrays(slot + 1), arrays(slot),
+                    screen_points_.points);
       descend(slot - 1);
     }
   }
@@ -184,8 +184,7 @@ class Enumeration {
     const FactorInterval interval = pivot_interval(task_, step, factor, arrays(level));
     ++evaluations_;
     if (interval.empty()) return;
-    auto at = std::lower_bound(pivots_.begin(), pivots_.end(),
-                               std::make_pair(interval.low, -1.0));
+    auto at = std::lower_bound(pivots_.begin(), pivots_.end(), std::make_pair(interval.low, -1.0));
     for (; at != pivots_.end() && at->first <= interval.high; ++at) {
       values_[0] = at->second;
       ++evaluations_;
@@ -248,9 +247,9 @@ GoalGrid spread_order(const GoalGrid& grid) {
   return out;
 }
 
-DiscreteOutcome choose_values(const Topology& topology, const Values& ideal,
-                              const PointSet& screen, const PointSet& fine, double floor_db,
-                              int keep, std::uint64_t seed, RunControl& control) {
+DiscreteOutcome choose_values(const Topology& topology, const Values& ideal, const PointSet& screen,
+                              const PointSet& fine, double floor_db, int keep, std::uint64_t seed,
+                              RunControl& control) {
   DiscreteOutcome out;
   const bool open = std::any_of(topology.slots.begin(), topology.slots.end(), any_value);
   auto lists = candidate_lists(topology, ideal);

@@ -33,8 +33,8 @@ struct DiscreteOutcome {
 
 // `screen` must be made of the fine points' frequencies, in spread order. Choices with a margin at
 // or below `floor_db` are not wanted. `ideal` holds the continuous optimum.
-DiscreteOutcome choose_values(const Topology& topology, const Values& ideal,
-                              const PointSet& screen, const PointSet& fine, double floor_db,
-                              int keep, std::uint64_t seed, RunControl& control);
+DiscreteOutcome choose_values(const Topology& topology, const Values& ideal, const PointSet& screen,
+                              const PointSet& fine, double floor_db, int keep, std::uint64_t seed,
+                              RunControl& control);
 
 }  // namespace bandwright

@@ -57,7 +57,9 @@ struct LeastCall {
   Keeper keeper;
 };
 
-double bound_cost(unsigned n, const double* point, double*, void*) { return -point[n - 1]; }
+double bound_cost(unsigned n, const double* point, double*, void*) {
+  return -point[n - 1];
+}
 
 void bound_excess(unsigned count, double* excess, unsigned n, const double* point, double*,
                   void* data) {

@@ -18,8 +18,8 @@ enum class LocalMethod {
 
 struct LocalOptions {
   LocalMethod method = LocalMethod::principal_axis;
-  double first_step = 0.1;       // same unit as the point
-  double value_tolerance = 1e-3; // stop when a step gains less than this
+  double first_step = 0.1;        // same unit as the point
+  double value_tolerance = 1e-3;  // stop when a step gains less than this
   int most_evaluations = 300;
   std::uint64_t seed = 0;
 };

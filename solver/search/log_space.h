@@ -28,7 +28,7 @@ class LogSpace {
   std::vector<int> free_;  // slot of each coordinate
   std::vector<double> lower_, upper_;
   std::vector<ValueRange> ranges_;
-  Values fixed_;           // one for each slot
+  Values fixed_;  // one for each slot
 };
 
 }  // namespace bandwright

@@ -30,9 +30,12 @@ constexpr double kLeaderGapDb = 0.3;
 
 double effort_factor(Effort effort) {
   switch (effort) {
-    case Effort::quick: return 0.4;
-    case Effort::normal: return 1;
-    case Effort::thorough: break;
+    case Effort::quick:
+      return 0.4;
+    case Effort::normal:
+      return 1;
+    case Effort::thorough:
+      break;
   }
   return 4;
 }

@@ -29,8 +29,7 @@ double additive_root(int dimension) {
 
 }  // namespace
 
-TopologySearch::TopologySearch(const Topology& topology, const PointSet& points,
-                               std::uint64_t seed)
+TopologySearch::TopologySearch(const Topology& topology, const PointSet& points, std::uint64_t seed)
     : topology_(topology),
       space_(topology),
       ladder_(topology_, points),
@@ -60,8 +59,8 @@ std::vector<double> TopologySearch::kicked(int index) const {
   const double share = 0.3 + 0.7 * draw.uniform(1);
   for (std::size_t i = 0; i < start.size(); ++i) {
     if (draw.uniform(2 + 2 * i) < share) start[i] += size * draw.normal(3 + 2 * i);
-    start[i] = std::clamp(start[i], space_.lower(static_cast<int>(i)),
-                          space_.upper(static_cast<int>(i)));
+    start[i] =
+        std::clamp(start[i], space_.lower(static_cast<int>(i)), space_.upper(static_cast<int>(i)));
   }
   return start;
 }

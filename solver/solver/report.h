@@ -15,14 +15,14 @@ namespace bandwright {
 struct GoalResult {
   double value_db = 0;  // the worst over the band and the load states, checked between samples
   double at_hz = 0;
-  int load = 0;         // the load state in which it is worst
+  int load = 0;  // the load state in which it is worst
   double margin_db = 0;
   bool met = false;
 };
 
 struct Yield {
   double value = 0;
-  double low = 0;   // Wilson interval at `confidence`
+  double low = 0;  // Wilson interval at `confidence`
   double high = 0;
   double confidence = 0.95;
   int samples = 0;
@@ -41,7 +41,7 @@ struct ElementShare {
 
 struct ElementStress {
   int element = 0;
-  double peak_v = 0;        // largest over all goal bands and load states, at drive_w available
+  double peak_v = 0;  // largest over all goal bands and load states, at drive_w available
   double peak_a = 0;
   double dissipated_w = 0;
 };
@@ -60,6 +60,13 @@ struct Ideal {
   Values values;
 };
 
+// Why a design stands where it does: the figure it was ranked by. A yield here is that of the
+// boards it was chosen with; the one in `Yield` is of fresh boards.
+struct Ranking {
+  RankBy by = RankBy::margin;
+  double value = 0;
+};
+
 struct Design {
   Topology topology;
   Values values;
@@ -67,6 +74,8 @@ struct Design {
   double margin_db = 0;
   std::vector<GoalResult> goals;
   std::optional<Ideal> ideal;  // the best continuous values found for this topology
+  std::optional<Ranking> ranking;
+  int agreeing_starts = 0;  // independent starts that found the ideal values
   std::optional<Yield> yield;
   std::optional<MarginQuantiles> margin_quantiles;
   std::vector<ElementShare> sensitivity;  // empty without Monte Carlo
