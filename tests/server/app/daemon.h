@@ -2,36 +2,19 @@
 #pragma once
 
 #include <doctest/doctest.h>
-#include <unistd.h>
 
 #include <cstdint>
 #include <cstdlib>
 #include <filesystem>
-#include <memory>
+#include <iterator>
 #include <string>
 #include <utility>
 #include <vector>
 
 #include "tests/server/app/child_process.h"
+#include "tests/server/temp_dir.h"
 
 namespace bandwright {
-
-class ScratchFolder {
- public:
-  ScratchFolder() {
-    std::string pattern = (std::filesystem::temp_directory_path() / "bandwright-XXXXXX").string();
-    REQUIRE(::mkdtemp(pattern.data()) != nullptr);
-    path = pattern;
-  }
-  ~ScratchFolder() {
-    std::error_code ignored;
-    std::filesystem::remove_all(path, ignored);
-  }
-  ScratchFolder(const ScratchFolder&) = delete;
-  ScratchFolder& operator=(const ScratchFolder&) = delete;
-
-  std::filesystem::path path;
-};
 
 inline std::vector<std::string> serve_arguments(const std::filesystem::path& data,
                                                 std::vector<std::string> more = {}) {

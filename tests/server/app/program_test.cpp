@@ -54,14 +54,14 @@ TEST_CASE("a wrong configuration is status 78 with every fault named") {
 }
 
 TEST_CASE("options are read from the file that --config names") {
-  const ScratchFolder folder;
-  const auto file = folder.path / "bw.conf";
-  std::ofstream(file) << "data = " << folder.path.string() << "\nworkers = 0\n";
+  const TempDir folder;
+  const auto file = folder.path() / "bw.conf";
+  std::ofstream(file) << "data = " << folder.path().string() << "\nworkers = 0\n";
   const Run run({"serve", "--config", file.string()});
   CHECK(run.status == 78);
   CHECK(run.says(file.string() + ":2: '0'"));
   CHECK_FALSE(run.says("data: "));
-  CHECK(Run({"serve", "--config", (folder.path / "none").string()}).status == 1);
+  CHECK(Run({"serve", "--config", (folder.path() / "none").string()}).status == 1);
 }
 
 TEST_CASE("solve refuses a request that cannot be read with status 65 and a problem document") {

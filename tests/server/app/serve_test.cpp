@@ -56,8 +56,8 @@ bool becomes_ready(const Daemon& daemon, int status) {
 
 TEST_CASE("the daemon says where it listens, becomes ready, and ends on either signal") {
   for (const int signal : {SIGTERM, SIGINT}) {
-    const ScratchFolder folder;
-    Daemon daemon(folder.path);
+    const TempDir folder;
+    Daemon daemon(folder.path());
     CHECK(becomes_ready(daemon, 200));
     daemon.process.signal(signal);
     CHECK(daemon.process.wait() == 0);
@@ -66,27 +66,27 @@ TEST_CASE("the daemon says where it listens, becomes ready, and ends on either s
 }
 
 TEST_CASE("a second daemon on the same data folder is refused with status 69") {
-  const ScratchFolder folder;
-  const Daemon first(folder.path);
-  ChildProcess second(BANDWRIGHT_DAEMON, serve_arguments(folder.path));
+  const TempDir folder;
+  const Daemon first(folder.path());
+  ChildProcess second(BANDWRIGHT_DAEMON, serve_arguments(folder.path()));
   CHECK(second.wait() == 69);
   CHECK(second.error_text.find("in use by another process") != std::string::npos);
 }
 
 TEST_CASE("an address in use is refused with status 69 and its reason") {
-  const ScratchFolder one;
-  const ScratchFolder two;
-  const Daemon first(one.path);
+  const TempDir one;
+  const TempDir two;
+  const Daemon first(one.path());
   ChildProcess second(BANDWRIGHT_DAEMON,
                       {"serve", "--listen", "127.0.0.1:" + std::to_string(first.port), "--data",
-                       two.path.string()});
+                       two.path().string()});
   CHECK(second.wait() == 69);
   CHECK(second.error_text.find("cannot listen") != std::string::npos);
 }
 
 TEST_CASE("while it stops the daemon answers, but is not ready") {
-  const ScratchFolder folder;
-  Daemon daemon(folder.path, {"--shutdown-seconds", "600"});
+  const TempDir folder;
+  Daemon daemon(folder.path(), {"--shutdown-seconds", "600"});
   const std::string job = start_long_job(daemon);
   daemon.process.signal(SIGTERM);
   CHECK(becomes_ready(daemon, 503));
@@ -97,15 +97,15 @@ TEST_CASE("while it stops the daemon answers, but is not ready") {
 }
 
 TEST_CASE("a job that outlasts the stop runs again after the next start, its attempt given back") {
-  const ScratchFolder folder;
+  const TempDir folder;
   std::string job;
   {
-    Daemon daemon(folder.path, {"--shutdown-seconds", "0"});
+    Daemon daemon(folder.path(), {"--shutdown-seconds", "0"});
     job = start_long_job(daemon);
     daemon.process.signal(SIGTERM);
     CHECK(daemon.process.wait() == 0);
   }
-  const Daemon daemon(folder.path);
+  const Daemon daemon(folder.path());
   bool runs = false;
   std::string body;
   for (int i = 0; i < 1000 && !runs; ++i) {
@@ -119,8 +119,8 @@ TEST_CASE("a job that outlasts the stop runs again after the next start, its att
 }
 
 TEST_CASE("what is logged is one JSON object a line") {
-  const ScratchFolder folder;
-  Daemon daemon(folder.path);
+  const TempDir folder;
+  Daemon daemon(folder.path());
   CHECK(get(daemon, "/livez"));
   daemon.process.signal(SIGTERM);
   REQUIRE(daemon.process.wait() == 0);
