@@ -77,20 +77,26 @@ Losses cut_power(int cuts, bool syncs_are_lies) {
     disk.syncs_are_lies = syncs_are_lies;
     std::mt19937_64 random(static_cast<std::uint64_t>(losses.cuts));
     std::map<std::string, Promised> jobs;
-    for (int i = 0; i < 8; ++i, ++losses.cuts) {
-      disk.cut_power_after(1 + static_cast<int>(random() % (random() % 8 ? 200 : 1500)));
+    for (const int end = losses.cuts + 8; losses.cuts < end;) {
+      if (random() % 4 == 0) {  // also while the store is made or recovers from the cut before
+        disk.cut_power_after(1 + static_cast<int>(random() % 30));
+        Store::open(dir.path(), options_on(disk));
+        disk.restore_power(random);
+        ++losses.cuts;
+      }
       {
-        auto opened = Store::open(dir.path(), options_on(disk));
-        if (opened.ok()) work_until_cut(**opened, random, jobs);
+        const auto opened = Store::open(dir.path(), options_on(disk));
+        if (!opened.ok()) {
+          ++losses.unreadable;
+          losses.cuts = end;
+          break;
+        }
+        compare(**opened, jobs, losses);
+        disk.cut_power_after(1 + static_cast<int>(random() % (random() % 8 ? 200 : 1500)));
+        work_until_cut(**opened, random, jobs);
       }
       disk.restore_power(random);
-      const auto opened = Store::open(dir.path(), options_on(disk));
-      if (!opened.ok()) {
-        ++losses.unreadable;
-        losses.cuts += 8 - i;
-        break;
-      }
-      compare(**opened, jobs, losses);
+      ++losses.cuts;
     }
   }
   return losses;
