@@ -44,8 +44,7 @@ std::optional<Bound> decode_bound(const Node& goal, std::optional<GoalQuantity> 
 }
 
 std::optional<double> decode_edge(const Node& goal, std::string_view name) {
-  const auto node = goal.require(name, "an edge of the goal's band");
-  return node ? node->quantity(Unit::hertz, kFrequencyHz) : std::nullopt;
+  return goal.required_quantity(name, "an edge of the goal's band", Unit::hertz, kFrequencyHz);
 }
 
 std::optional<GoalQuantity> decode_quantity(const Node& goal) {

@@ -25,9 +25,8 @@ std::optional<Slot> decode_slot(const Node& node, const PartTable& parts) {
     return std::nullopt;
   }
   const auto place = decode_place(node);
-  const auto value_node = node.require(names.value, "the element's value");
   const auto value =
-      value_node ? value_node->quantity(kind_unit(*kind), names.values) : std::nullopt;
+      node.required_quantity(names.value, "the element's value", kind_unit(*kind), names.values);
   if (const auto label = node.find("label")) label->text(limits::kNameBytes);
   PartDraft draft = element_part(node, *kind, false, parts);
   decode_tolerance(node, *kind, draft);

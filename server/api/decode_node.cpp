@@ -155,6 +155,18 @@ std::optional<Node> Node::require(std::string_view name, std::string_view what) 
   return member;
 }
 
+std::optional<double> Node::member_quantity(std::string_view name, std::optional<double> usual,
+                                            Unit unit, AllowedRange allowed) const {
+  const std::optional<Node> member = find(name);
+  return member ? member->quantity(unit, allowed) : usual;
+}
+
+std::optional<double> Node::required_quantity(std::string_view name, std::string_view what,
+                                              Unit unit, AllowedRange allowed) const {
+  const std::optional<Node> member = require(name, what);
+  return member ? member->quantity(unit, allowed) : std::nullopt;
+}
+
 Node Node::item(std::size_t index) const {
   return Node((*value_)[index], pointer_child(pointer_, index), *context_);
 }

@@ -68,6 +68,13 @@ class Node {
   // As find(), with a fault if the member is missing. `what` says what it is for.
   std::optional<Node> require(std::string_view name, std::string_view what) const;
 
+  // The quantity of the member `name`, or `usual` where it is left out.
+  std::optional<double> member_quantity(std::string_view name, std::optional<double> usual,
+                                        Unit unit, AllowedRange allowed) const;
+  // As member_quantity(), with a fault if the member is missing.
+  std::optional<double> required_quantity(std::string_view name, std::string_view what, Unit unit,
+                                          AllowedRange allowed) const;
+
   // The items of an array of `least` to `most` of `noun` ("goals").
   std::optional<std::vector<Node>> items(std::size_t least, std::size_t most,
                                          std::string_view noun) const;

@@ -72,9 +72,10 @@ std::string job_text(const JobRecord& job) {
   add_standing(head, job);
   std::string text = json_text(head);
   text.pop_back();
-  if (!job.result.empty()) {
+  constexpr std::size_t kBraces = 2;
+  if (job.result.size() > kBraces) {
     text += ',';
-    text.append(job.result, 1, job.result.size() - 2);
+    text.append(job.result, 1, job.result.size() - kBraces);
   }
   if (!job.id.empty()) text += ",\"links\":" + json_text(links_json(job.id));
   return text + "}";
