@@ -14,10 +14,14 @@ constexpr std::size_t kShownBytes = 40;
 
 // A short look at a string from outside, cut between characters.
 std::string in_quotes(std::string_view text) {
-  if (text.size() <= kShownBytes) return "\"" + std::string(text) + "\"";
-  std::size_t end = kShownBytes;
-  while (end > 0 && (static_cast<unsigned char>(text[end]) & 0xC0) == 0x80) --end;
-  return "\"" + std::string(text.substr(0, end)) + "...\"";
+  std::size_t end = std::min(text.size(), kShownBytes);
+  while (end < text.size() && end > 0 && (static_cast<unsigned char>(text[end]) & 0xC0) == 0x80) {
+    --end;
+  }
+  std::string out = "\"";
+  out += text.substr(0, end);
+  out += end < text.size() ? "...\"" : "\"";
+  return out;
 }
 
 std::string found_text(const Json& value) {

@@ -91,22 +91,26 @@ std::optional<ValueRange> TemplateDecoder::range(const Node& node, Kind kind) co
   }
   node.expect_object({"min", "max"});
   const auto usual = default_range_of(kind);
-  std::optional<double> min = usual ? std::optional(usual->min) : std::nullopt;
-  std::optional<double> max = usual ? std::optional(usual->max) : std::nullopt;
-  const auto min_node = node.find("min");
-  const auto max_node = node.find("max");
-  if (min_node) min = min_node->quantity(unit, allowed);
-  if (max_node) max = max_node->quantity(unit, allowed);
+  std::optional<double> least;
+  std::optional<double> most;
+  if (usual) {
+    least = usual->min;
+    most = usual->max;
+  }
+  const bool has_min = node.has("min");
+  const bool has_max = node.has("max");
+  const auto min = node.member_quantity("min", least, unit, allowed);
+  const auto max = node.member_quantity("max", most, unit, allowed);
   if (!min || !max) return std::nullopt;
   if (*min > *max) {
-    const std::string_view whose_min = min_node ? "min " : "the default min ";
-    const std::string_view whose_max = max_node ? "max " : "the default max ";
+    const std::string_view whose_min = has_min ? "min " : "the default min ";
+    const std::string_view whose_max = has_max ? "max " : "the default max ";
     node.fault("reversed", std::string(whose_min) + shown(*min, unit) + " is above " +
                                std::string(whose_max) + shown(*max, unit));
     return std::nullopt;
   }
-  if (!min_node) node.assume_default("min", format_quantity(*min, unit));
-  if (!max_node) node.assume_default("max", format_quantity(*max, unit));
+  if (!has_min) node.assume_default("min", format_quantity(*min, unit));
+  if (!has_max) node.assume_default("max", format_quantity(*max, unit));
   return ValueRange{*min, *max};
 }
 
@@ -162,36 +166,35 @@ std::optional<Template> TemplateDecoder::elements(const Node& node) const {
   return Template(std::move(decoded));
 }
 
-std::optional<int> decode_count(const Node& ladder, std::string_view name, int usual) {
-  if (const auto node = ladder.find(name)) {
-    const auto count = node->integer(1, static_cast<int>(limits::kElements));
-    return count ? std::optional(static_cast<int>(*count)) : std::nullopt;
-  }
-  ladder.assume_default(name, std::to_string(usual));
-  return usual;
+// A number of elements; 0 if it is at fault.
+int decode_count(const Node& node) {
+  constexpr int kMost = static_cast<int>(limits::kElements);
+  return static_cast<int>(node.integer(1, kMost).value_or(0));
 }
 
 std::optional<Template> TemplateDecoder::ladder(const Node& node) const {
   if (!node.expect_object({"min_elements", "max_elements", "kinds"})) return std::nullopt;
-  const LadderRule usual;
-  const auto min = decode_count(node, "min_elements", usual.min_elements);
-  const auto max_node = node.require("max_elements", "the most elements of a ladder");
-  const auto max =
-      max_node ? max_node->integer(1, static_cast<int>(limits::kElements)) : std::nullopt;
+  LadderRule rule;
+  if (const auto min = node.find("min_elements")) {
+    rule.min_elements = decode_count(*min);
+  } else {
+    node.assume_default("min_elements", std::to_string(rule.min_elements));
+  }
+  const auto max = node.require("max_elements", "the most elements of a ladder");
+  rule.max_elements = max ? decode_count(*max) : 0;
   std::optional<std::vector<Kind>> kinds{{Kind::inductor, Kind::capacitor}};
   if (const auto kinds_node = node.find("kinds")) {
     kinds = decode_kind_list(*kinds_node);
   } else {
     node.assume_default("kinds", "inductor, capacitor");
   }
-  if (min && max && *min > *max) {
-    node.member_fault(
-        "min_elements", "reversed",
-        "min_elements " + std::to_string(*min) + " is above max_elements " + std::to_string(*max));
+  if (rule.min_elements == 0 || rule.max_elements == 0 || !kinds) return std::nullopt;
+  if (rule.min_elements > rule.max_elements) {
+    node.member_fault("min_elements", "reversed",
+                      "min_elements " + std::to_string(rule.min_elements) +
+                          " is above max_elements " + std::to_string(rule.max_elements));
     return std::nullopt;
   }
-  if (!min || !max || !kinds) return std::nullopt;
-  LadderRule rule{*min, static_cast<int>(*max), {}};
   for (const Kind kind : *kinds) {
     const PartDraft& draft = parts_[static_cast<std::size_t>(kind)];
     const auto range = default_range_of(kind);

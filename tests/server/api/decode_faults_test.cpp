@@ -208,7 +208,7 @@ TEST_CASE("an active load is told at its sample, and rounding is forgiven") {
 
 TEST_CASE("a Touchstone fault carries the number of its line") {
   const auto faults = faults_of(job_request_with(
-      "/load", R"({"touchstone": "! data\n# MHZ S RI R 50\n140 0.5 -0.7\n160 0.1\n"})"));
+      "/load", R"({"touchstone": "! data\n# MHZ S RI R 50\n140 0.5 -0.7\n160 0.1 x\n"})"));
   REQUIRE_FALSE(faults.empty());
   CHECK(faults[0].detail.find("line 4") != std::string::npos);
 }
