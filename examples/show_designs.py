@@ -25,15 +25,17 @@ def yield_text(design):
     return f"{percent(y['value'])} ({100 * y['low']:.2f} to {percent(y['high'])})"
 
 
-def worst_text(design):
-    worst = min(design["goals"], key=lambda goal: goal["margin_db"])
-    return f"{worst['value_db']:.2f} dB"
+def return_loss_text(design):
+    """The worst over all bands in which return loss is wanted."""
+    values = [goal["value_db"] for goal in design["goals"]
+              if goal["quantity"] == "return_loss" and goal["bound"] != "at_most"]
+    return f"{min(values):.2f} dB" if values else "-"
 
 
 def row(design):
     return [
         str(design["rank"]),
-        worst_text(design),
+        return_loss_text(design),
         f"{design['margin_db']:+.2f} dB",
         yield_text(design),
         f"{design['efficiency_db']:.2f} dB",
@@ -70,7 +72,7 @@ def main():
         f"without a network: return loss {unmatched['return_loss_db']:.2f} dB "
         f"at {megahertz(unmatched['at_hz'])}\n"
     )
-    head = ["rank", "worst", "margin", "yield (95 % interval)", "efficiency",
+    head = ["rank", "return loss", "margin", "yield (95 % interval)", "efficiency",
             "parts from the source to the load"]
     print(table([head] + [row(d) for d in designs]))
     for title in ("warnings", "cautions"):
