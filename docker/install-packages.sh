@@ -53,5 +53,6 @@ apt() {
   "${as_root[@]}" env DEBIAN_FRONTEND=noninteractive \
     apt-get -qq -o DPkg::Lock::Timeout=300 "$@" >"$log" 2>&1 || { cat "$log" >&2; return 1; }
 }
-apt update
+# A source that cannot be read may be one that is not needed; the installation shows.
+apt update || echo "install-packages.sh: not every package source could be read" >&2
 apt install --yes --no-install-recommends "${missing[@]}"
