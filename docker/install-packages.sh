@@ -32,7 +32,7 @@ missing=()
 for group in "$@"; do
   packages=$(packages_of "$group")
   for package in $packages; do
-    installed "$package" || missing+=("$package")
+    [[ " ${missing[*]} " == *" $package "* ]] || installed "$package" || missing+=("$package")
   done
 done
 [ ${#missing[@]} -gt 0 ] || exit 0
