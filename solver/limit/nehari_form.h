@@ -13,7 +13,7 @@
 // where W integrates (1 - R^2) v_i conj(v_j) and B integrates k v_i v_j, over the bands alone.
 #pragma once
 
-#include <Eigen/Core>
+#include <memory>
 #include <vector>
 
 #include "solver/limit/rational_basis.h"
@@ -38,16 +38,8 @@ class NehariForm {
   double lowest_unreachable_db(int section, double from_db) const;
 
  private:
-  struct Discs;
-  Discs discs(double loss_db) const;
-  Eigen::MatrixXd form(int section, double loss_db) const;
-  double value(const Eigen::VectorXd& v, const Eigen::VectorXcd& field, double loss_db) const;
-  double lowest_for(const Eigen::VectorXd& v, double from_db) const;
-
-  std::vector<LoadNode> nodes_;
-  // One row a function, one column a node.
-  Eigen::MatrixXd real_;
-  Eigen::MatrixXd imag_;
+  struct Tables;
+  std::shared_ptr<const Tables> tables_;
 };
 
 }  // namespace bandwright
