@@ -81,7 +81,8 @@ Ladder::Ladder(const Topology& topology, const PointSet& points) : points_(&poin
            points.current_re.data(),
            points.current_im.data(),
            points.source_re.data(),
-           points.source_im.data()};
+           points.source_im.data(),
+           points.source_real};
 }
 
 Ladder::Scratch Ladder::make_scratch() const {
@@ -94,6 +95,11 @@ void Ladder::prepare(const double* values, Scratch& scratch) const {
   for (int i = 0; i < n; ++i) {
     scratch.x[n - 1 - i] = reciprocal_[i] ? 1 / values[i] : values[i];
   }
+}
+
+void Ladder::evaluate_points(const double* values, Scratch& scratch) const {
+  prepare(values, scratch);
+  kernel_points(task_, scratch.x.data(), scratch.badness.data(), scratch.worst.data());
 }
 
 double Ladder::segment_margin_db(int segment, const Scratch& scratch) const {
@@ -113,8 +119,7 @@ double Ladder::margin_db(const double* values, Scratch& scratch) const {
 }
 
 double Ladder::smooth_margin_db(const double* values, int p, Scratch& scratch) const {
-  prepare(values, scratch);
-  kernel_points(task_, scratch.x.data(), scratch.badness.data(), scratch.worst.data());
+  evaluate_points(values, scratch);
   // Everything is taken relative to the worst point so that high powers neither overflow nor
   // vanish.
   double top = 0;
@@ -139,8 +144,7 @@ double Ladder::smooth_margin_db(const double* values, int p, Scratch& scratch) c
 }
 
 double Ladder::point_margins_db(const double* values, double* out, Scratch& scratch) const {
-  prepare(values, scratch);
-  kernel_points(task_, scratch.x.data(), scratch.badness.data(), scratch.worst.data());
+  evaluate_points(values, scratch);
   double least = 1e300;
   for (std::size_t g = 0; g < segments_.size(); ++g) {
     for (int k = 0; k < segments_[g].padded; ++k) {

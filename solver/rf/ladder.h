@@ -39,6 +39,8 @@ class Ladder {
   // `p` on the reflection, of every point's badness. Rises to the margin with p. `p` is 2, 4, 8,
   // ...
   double smooth_margin_db(const double* values, int p, Scratch& scratch) const;
+  // Fills the scratch with every point's badness (what the kernel reads: see `Badness`).
+  void evaluate_points(const double* values, Scratch& scratch) const;
   // The weighted margin of every point (padding included), dB, to `out`; returns the smallest.
   double point_margins_db(const double* values, double* out, Scratch& scratch) const;
   // The worst margin of one segment after margin_db() or a like call filled `scratch`.

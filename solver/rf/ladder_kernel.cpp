@@ -10,77 +10,108 @@
 HWY_BEFORE_NAMESPACE();
 namespace bandwright {
 namespace HWY_NAMESPACE {
-HWY_INLINE V delivered_reciprocal(const KernelTask& t, const State& s, int at) {
-  const D d;
-  const V zr = hn::LoadU(d, t.source_re + at);
-  const V zi = hn::LoadU(d, t.source_im + at);
-  const V re = hn::NegMulAdd(zi, s.i_im, hn::MulAdd(zr, s.i_re, s.v_re));
-  const V im = hn::MulAdd(zi, s.i_re, hn::MulAdd(zr, s.i_im, s.v_im));
-  return hn::MulAdd(re, re, hn::Mul(im, im));
-}
-
-HWY_INLINE V returned(const KernelTask& t, const State& s, int at) {
-  const D d;
-  const V zr = hn::LoadU(d, t.source_re + at);
-  const V zi = hn::LoadU(d, t.source_im + at);
-  const V re = hn::NegMulAdd(zi, s.i_im, hn::NegMulAdd(zr, s.i_re, s.v_re));
-  const V im = hn::MulAdd(zi, s.i_re, hn::NegMulAdd(zr, s.i_im, s.v_im));
-  return hn::MulAdd(re, re, hn::Mul(im, im));
-}
-
-HWY_INLINE V badness_of(const KernelTask& t, Badness badness, const State& s, int at) {
-  const D d;
-  const V one = hn::Set(d, 1.0);
-  switch (badness) {
-    case Badness::reflected_from_gain:
-      return hn::Sub(one, hn::Div(one, delivered_reciprocal(t, s, at)));
-    case Badness::reflected:
-      return hn::Div(returned(t, s, at), delivered_reciprocal(t, s, at));
-    case Badness::not_reflected:
-      return hn::Div(delivered_reciprocal(t, s, at), returned(t, s, at));
-    case Badness::lost:
-      return delivered_reciprocal(t, s, at);
-    case Badness::transferred:
-      break;
+// |V + Zs I|^2 of vector `k` of a block.
+template <bool kRealSource>
+HWY_INLINE V delivered_reciprocal(const KernelTask& t, const State& s, int at, int k) {
+  const V zr = load(t.source_re, at, k);
+  V re = hn::MulAdd(zr, s.i_re[k], s.v_re[k]);
+  V im = hn::MulAdd(zr, s.i_im[k], s.v_im[k]);
+  if (!kRealSource) {
+    const V zi = load(t.source_im, at, k);
+    re = hn::NegMulAdd(zi, s.i_im[k], re);
+    im = hn::MulAdd(zi, s.i_re[k], im);
   }
-  return hn::Div(one, delivered_reciprocal(t, s, at));
+  return hn::MulAdd(re, re, hn::Mul(im, im));
+}
+
+// |V - conj(Zs) I|^2.
+template <bool kRealSource>
+HWY_INLINE V returned(const KernelTask& t, const State& s, int at, int k) {
+  const V zr = load(t.source_re, at, k);
+  V re = hn::NegMulAdd(zr, s.i_re[k], s.v_re[k]);
+  V im = hn::NegMulAdd(zr, s.i_im[k], s.v_im[k]);
+  if (!kRealSource) {
+    const V zi = load(t.source_im, at, k);
+    re = hn::NegMulAdd(zi, s.i_im[k], re);
+    im = hn::MulAdd(zi, s.i_re[k], im);
+  }
+  return hn::MulAdd(re, re, hn::Mul(im, im));
+}
+
+template <Badness kBadness, bool kRealSource>
+HWY_INLINE V badness_of(const KernelTask& t, const State& s, int at, int k) {
+  const V one = hn::Set(D(), 1.0);
+  const V delivered = delivered_reciprocal<kRealSource>(t, s, at, k);
+  if (kBadness == Badness::lost) return delivered;
+  if (kBadness == Badness::transferred) return hn::Div(one, delivered);
+  if (kBadness == Badness::reflected_from_gain) return hn::Sub(one, hn::Div(one, delivered));
+  const V back = returned<kRealSource>(t, s, at, k);
+  return kBadness == Badness::reflected ? hn::Div(back, delivered) : hn::Div(delivered, back);
 }
 
 HWY_INLINE State state_at_source(const KernelTask& t, const double* x, int at) {
-  const D d;
-  State s{hn::LoadU(d, t.voltage_re + at), hn::LoadU(d, t.voltage_im + at),
-          hn::LoadU(d, t.current_re + at), hn::LoadU(d, t.current_im + at)};
-  for (int k = 0; k < t.step_count; ++k) apply(t.steps[k], hn::Set(d, x[k]), at, s);
+  State s;
+  for (int k = 0; k < kVectors; ++k) {
+    s.v_re[k] = load(t.voltage_re, at, k);
+    s.v_im[k] = load(t.voltage_im, at, k);
+    s.i_re[k] = load(t.current_re, at, k);
+    s.i_im[k] = load(t.current_im, at, k);
+  }
+  for (int i = 0; i < t.step_count; ++i) apply(t.steps[i], hn::Set(D(), x[i]), at, s);
   return s;
 }
 
-template <bool kStore>
-HWY_INLINE void run(const KernelTask& t, const double* x, double* badness, double* worst) {
-  const D d;
-  const int lanes = static_cast<int>(hn::Lanes(d));
-  for (int g = 0; g < t.segment_count; ++g) {
-    const KernelSegment& segment = t.segments[g];
-    V most = hn::Set(d, -1e300);
-    // Without stores the cheaper monotone figure D stands in for 1 - 1/D until the end.
-    const bool from_gain = !kStore && segment.badness == Badness::reflected_from_gain;
-    const Badness figure = from_gain ? Badness::lost : segment.badness;
-    for (int k = 0; k < segment.padded; k += lanes) {
-      const int at = segment.first + k;
-      const V value = badness_of(t, figure, state_at_source(t, x, at), at);
-      if (kStore) hn::StoreU(value, d, badness + at);
+template <Badness kBadness, bool kRealSource>
+HWY_INLINE double segment_worst(const KernelTask& t, const KernelSegment& segment, const double* x,
+                                double* badness) {
+  V most = hn::Set(D(), -1e300);
+  for (int at = segment.first; at < segment.first + segment.padded; at += kLanes) {
+    const State s = state_at_source(t, x, at);
+    for (int k = 0; k < kVectors; ++k) {
+      const V value = badness_of<kBadness, kRealSource>(t, s, at, k);
+      if (badness != nullptr) hn::StoreU(value, D(), badness + at + k * kVectorLanes);
       most = hn::Max(most, value);
     }
-    const double largest = hn::GetLane(hn::MaxOfLanes(d, most));
-    worst[g] = from_gain ? 1.0 - 1.0 / largest : largest;
+  }
+  return hn::GetLane(hn::MaxOfLanes(D(), most));
+}
+
+template <bool kRealSource>
+HWY_INLINE double worst_of(const KernelTask& t, const KernelSegment& segment, Badness badness_kind,
+                           const double* x, double* badness) {
+  switch (badness_kind) {
+    case Badness::reflected_from_gain:
+      return segment_worst<Badness::reflected_from_gain, kRealSource>(t, segment, x, badness);
+    case Badness::reflected:
+      return segment_worst<Badness::reflected, kRealSource>(t, segment, x, badness);
+    case Badness::not_reflected:
+      return segment_worst<Badness::not_reflected, kRealSource>(t, segment, x, badness);
+    case Badness::lost:
+      return segment_worst<Badness::lost, kRealSource>(t, segment, x, badness);
+    case Badness::transferred:
+      break;
+  }
+  return segment_worst<Badness::transferred, kRealSource>(t, segment, x, badness);
+}
+
+HWY_INLINE void run(const KernelTask& t, const double* x, double* badness, double* worst) {
+  for (int g = 0; g < t.segment_count; ++g) {
+    const KernelSegment& segment = t.segments[g];
+    // When no point's figure is kept, D stands in for 1 - 1/D, which rises with it.
+    const bool from_gain = badness == nullptr && segment.badness == Badness::reflected_from_gain;
+    const Badness kind = from_gain ? Badness::lost : segment.badness;
+    const double most = t.real_source ? worst_of<true>(t, segment, kind, x, badness)
+                                      : worst_of<false>(t, segment, kind, x, badness);
+    worst[g] = from_gain ? 1.0 - 1.0 / most : most;
   }
 }
 
 void worst_impl(const KernelTask& task, const double* x, double* worst) {
-  run<false>(task, x, nullptr, worst);
+  run(task, x, nullptr, worst);
 }
 
 void points_impl(const KernelTask& task, const double* x, double* badness, double* worst) {
-  run<true>(task, x, badness, worst);
+  run(task, x, badness, worst);
 }
 
 const char* name_impl() {

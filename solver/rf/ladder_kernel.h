@@ -50,6 +50,7 @@ struct KernelTask {
   const double *voltage_re = nullptr, *voltage_im = nullptr;
   const double *current_re = nullptr, *current_im = nullptr;
   const double *source_re = nullptr, *source_im = nullptr;
+  bool real_source = false;  // source_im is zero everywhere
 };
 
 // Writes each segment's largest badness to `worst` (segment_count long). `x` holds one factor for

@@ -20,49 +20,72 @@ namespace hn = hwy::HWY_NAMESPACE;
 // At most kLanes wide, so that every segment is a whole number of vectors on every target.
 using D = hn::CappedTag<double, kLanes>;
 using V = hn::Vec<D>;
+// A block is kLanes points, as many vectors as that takes: the element loop around it then costs
+// little, and the chains of several vectors fill the arithmetic units together.
+constexpr int kVectorLanes = static_cast<int>(hn::MaxLanes(D()));
+constexpr int kVectors = kLanes / kVectorLanes;
 
 struct State {
-  V v_re, v_im, i_re, i_im;
+  V v_re[kVectors], v_im[kVectors], i_re[kVectors], i_im[kVectors];
 };
 
-// (to) += (a + jb) (from).
+HWY_INLINE V load(const double* table, int at, int k) {
+  return hn::LoadU(D(), table + at + k * kVectorLanes);
+}
+
+// to += (a + jb) from.
 HWY_INLINE void add_product(V a, V b, V from_re, V from_im, V& to_re, V& to_im) {
   to_re = hn::NegMulAdd(b, from_im, hn::MulAdd(a, from_re, to_re));
   to_im = hn::MulAdd(b, from_re, hn::MulAdd(a, from_im, to_im));
 }
 
 HWY_INLINE void apply(const KernelStep& step, V x, int at, State& s) {
-  const D d;
   using Op = KernelStep::Op;
-  const V b = hn::Mul(x, hn::LoadU(d, step.b + at));
   switch (step.op) {
     case Op::series_reactance:
-      s.v_re = hn::NegMulAdd(b, s.i_im, s.v_re);
-      s.v_im = hn::MulAdd(b, s.i_re, s.v_im);
+      for (int k = 0; k < kVectors; ++k) {
+        const V b = hn::Mul(x, load(step.b, at, k));
+        s.v_re[k] = hn::NegMulAdd(b, s.i_im[k], s.v_re[k]);
+        s.v_im[k] = hn::MulAdd(b, s.i_re[k], s.v_im[k]);
+      }
       return;
     case Op::shunt_susceptance:
-      s.i_re = hn::NegMulAdd(b, s.v_im, s.i_re);
-      s.i_im = hn::MulAdd(b, s.v_re, s.i_im);
+      for (int k = 0; k < kVectors; ++k) {
+        const V b = hn::Mul(x, load(step.b, at, k));
+        s.i_re[k] = hn::NegMulAdd(b, s.v_im[k], s.i_re[k]);
+        s.i_im[k] = hn::MulAdd(b, s.v_re[k], s.i_im[k]);
+      }
       return;
     case Op::series_linear:
-      add_product(hn::Mul(x, hn::LoadU(d, step.a + at)), b, s.i_re, s.i_im, s.v_re, s.v_im);
+      for (int k = 0; k < kVectors; ++k) {
+        add_product(hn::Mul(x, load(step.a, at, k)), hn::Mul(x, load(step.b, at, k)), s.i_re[k],
+                    s.i_im[k], s.v_re[k], s.v_im[k]);
+      }
       return;
     case Op::shunt_linear:
-      add_product(hn::Mul(x, hn::LoadU(d, step.a + at)), b, s.v_re, s.v_im, s.i_re, s.i_im);
+      for (int k = 0; k < kVectors; ++k) {
+        add_product(hn::Mul(x, load(step.a, at, k)), hn::Mul(x, load(step.b, at, k)), s.v_re[k],
+                    s.v_im[k], s.i_re[k], s.i_im[k]);
+      }
       return;
-    case Op::series_affine: {
-      const V re = hn::MulAdd(x, hn::LoadU(d, step.a + at), hn::LoadU(d, step.c + at));
-      const V im = hn::Add(b, hn::LoadU(d, step.d + at));
-      add_product(re, im, s.i_re, s.i_im, s.v_re, s.v_im);
+    case Op::series_affine:
+      for (int k = 0; k < kVectors; ++k) {
+        const V re = hn::MulAdd(x, load(step.a, at, k), load(step.c, at, k));
+        const V im = hn::MulAdd(x, load(step.b, at, k), load(step.d, at, k));
+        add_product(re, im, s.i_re[k], s.i_im[k], s.v_re[k], s.v_im[k]);
+      }
       return;
-    }
-    case Op::shunt_affine: {
-      const V re = hn::MulAdd(x, hn::LoadU(d, step.a + at), hn::LoadU(d, step.c + at));
-      const V im = hn::Add(b, hn::LoadU(d, step.d + at));
-      const V scale = hn::Div(hn::Set(d, 1.0), hn::MulAdd(re, re, hn::Mul(im, im)));
-      add_product(hn::Mul(re, scale), hn::Neg(hn::Mul(im, scale)), s.v_re, s.v_im, s.i_re, s.i_im);
+    case Op::shunt_affine:
+      for (int k = 0; k < kVectors; ++k) {
+        const V re = hn::MulAdd(x, load(step.a, at, k), load(step.c, at, k));
+        const V im = hn::MulAdd(x, load(step.b, at, k), load(step.d, at, k));
+        const V one = hn::Set(D(), 1.0);
+        const V scale = hn::Div(one, hn::MulAdd(re, re, hn::Mul(im, im)));
+        const V minus_b = hn::Mul(im, scale);
+        add_product(hn::Mul(re, scale), hn::Neg(minus_b), s.v_re[k], s.v_im[k], s.i_re[k],
+                    s.i_im[k]);
+      }
       return;
-    }
   }
 }
 

@@ -60,7 +60,6 @@ void describe_tolerance(const Problem& problem, Design& design, int threads) {
                          samples,
                          distribution};
   }
-  std::sort(margins.begin(), margins.end());
   design.margin_quantiles = MarginQuantiles{quantile(margins, 0.01), quantile(margins, 0.05),
                                             quantile(margins, 0.5), quantile(margins, 0.95)};
   const ReturnLossBand band =

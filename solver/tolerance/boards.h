@@ -25,6 +25,10 @@ class Boards {
     return distribution_ == Distribution::uniform ? random_.symmetric(index)
                                                   : random_.normal(index) / 3;
   }
+  // Where that deviation stands in its distribution, from 0 to 1.
+  double deviation_share(std::uint64_t board, int element) const {
+    return random_.uniform(board * kElementsMax + static_cast<std::uint64_t>(element));
+  }
   // Fills one value for each element. A value never falls below a thousandth of its nominal.
   void draw(std::uint64_t board, double* values) const;
 

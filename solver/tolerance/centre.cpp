@@ -61,7 +61,6 @@ class Climber {
     }
     judge(boards, margins, request_.boards);
     const double yield = passed(margins) / static_cast<double>(margins.size());
-    std::sort(margins.begin(), margins.end());
     return YieldScore{yield, quantile(margins, 0.05)};
   }
 

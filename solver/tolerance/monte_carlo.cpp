@@ -1,6 +1,7 @@
 #include "solver/tolerance/monte_carlo.h"
 
 #include <algorithm>
+#include <array>
 #include <cmath>
 #include <numeric>
 
@@ -13,21 +14,25 @@ namespace {
 constexpr int kChunk = 512;
 constexpr int kClasses = 20;
 
-// Boards sorted into kClasses classes by one element's deviation.
-double class_variance(const std::vector<int>& order, const std::vector<double>& margins,
-                      double total_variance) {
-  const std::size_t n = order.size();
-  const double mean = std::accumulate(margins.begin(), margins.end(), 0.0) / n;
+// The variance between the means of classes of equal probability of one element's deviation, less
+// what chance alone gives.
+double class_variance(const Boards& boards, int element, const std::vector<double>& margins,
+                      double mean, double total_variance) {
+  std::array<double, kClasses> sum{};
+  std::array<double, kClasses> count{};
+  for (std::size_t b = 0; b < margins.size(); ++b) {
+    const int c = static_cast<int>(kClasses * boards.deviation_share(b, element));
+    sum[c] += margins[b];
+    count[c] += 1;
+  }
   double between = 0;
   for (int c = 0; c < kClasses; ++c) {
-    const std::size_t from = n * c / kClasses, to = n * (c + 1) / kClasses;
-    double sum = 0;
-    for (std::size_t k = from; k < to; ++k) sum += margins[order[k]];
-    const double d = sum / (to - from) - mean;
-    between += (to - from) * d * d;
+    if (count[c] == 0) continue;
+    const double d = sum[c] / count[c] - mean;
+    between += count[c] * d * d;
   }
-  const double by_chance = (kClasses - 1.0) / (n - 1.0) * total_variance;
-  return between / n - by_chance;
+  const double n = static_cast<double>(margins.size());
+  return between / n - (kClasses - 1) / (n - 1) * total_variance;
 }
 
 }  // namespace
@@ -50,11 +55,14 @@ std::vector<double> board_margins_db(const Topology& topology, const Boards& boa
   return margins;
 }
 
-double quantile(const std::vector<double>& sorted, double q) {
-  const double at = q * (sorted.size() - 1);
+double quantile(std::vector<double>& values, double q) {
+  const double at = q * (values.size() - 1);
   const std::size_t k = static_cast<std::size_t>(at);
-  if (k + 1 >= sorted.size()) return sorted.back();
-  return sorted[k] + (at - k) * (sorted[k + 1] - sorted[k]);
+  const auto middle = values.begin() + k;
+  std::nth_element(values.begin(), middle, values.end());
+  if (k + 1 == values.size()) return *middle;
+  const double next = *std::min_element(middle + 1, values.end());
+  return *middle + (at - k) * (next - *middle);
 }
 
 std::vector<double> variance_shares(const Topology& topology, const Boards& boards,
@@ -68,16 +76,8 @@ std::vector<double> variance_shares(const Topology& topology, const Boards& boar
   variance /= n;
   if (!(variance > 1e-18)) return shares;
   for (std::size_t e = 0; e < shares.size(); ++e) {
-    std::vector<double> deviation(n);
-    std::vector<int> order(n);
-    for (std::size_t b = 0; b < n; ++b) {
-      deviation[b] = boards.deviation(b, static_cast<int>(e));
-      order[b] = static_cast<int>(b);
-    }
-    std::sort(order.begin(), order.end(), [&](int a, int b) {
-      return deviation[a] < deviation[b] || (deviation[a] == deviation[b] && a < b);
-    });
-    shares[e] = std::clamp(class_variance(order, margins, variance) / variance, 0.0, 1.0);
+    const double between = class_variance(boards, static_cast<int>(e), margins, mean, variance);
+    shares[e] = std::clamp(between / variance, 0.0, 1.0);
   }
   return shares;
 }
@@ -93,23 +93,25 @@ ReturnLossBand return_loss_band(const Topology& topology, const Boards& boards,
   const PointSet points(view, {frequency_hz});
   const Ladder ladder(topology, points);
   const std::size_t width = points.points;
-  std::vector<double> loss_db(width * count);
+  // Reflected power, one row for each frequency.
+  std::vector<double> reflected(width * count);
   parallel_for(threads, (count + kChunk - 1) / kChunk, [&](std::size_t chunk) {
     Ladder::Scratch scratch = ladder.make_scratch();
     Values values(topology.slots.size());
     const int end = std::min<int>(count, (chunk + 1) * kChunk);
     for (int b = chunk * kChunk; b < end; ++b) {
       boards.draw(b, values.data());
-      ladder.point_margins_db(values.data(), loss_db.data() + width * b, scratch);
+      ladder.evaluate_points(values.data(), scratch);
+      for (std::size_t k = 0; k < width; ++k) reflected[k * count + b] = scratch.badness[k];
     }
   });
   ReturnLossBand band;
-  std::vector<double> column(count);
+  std::vector<double> row(count);
+  const auto loss_db = [](double power) { return return_loss_db(std::sqrt(std::max(power, 0.0))); };
   for (std::size_t k = 0; k < frequency_hz.size(); ++k) {
-    for (int b = 0; b < count; ++b) column[b] = loss_db[width * b + k];
-    std::sort(column.begin(), column.end());
-    band.p05_db.push_back(quantile(column, 0.05));
-    band.p95_db.push_back(quantile(column, 0.95));
+    std::copy_n(reflected.begin() + k * count, count, row.begin());
+    band.p95_db.push_back(loss_db(quantile(row, 0.05)));
+    band.p05_db.push_back(loss_db(quantile(row, 0.95)));
   }
   return band;
 }

@@ -15,8 +15,8 @@ std::vector<double> board_margins_db(const Topology& topology, const Boards& boa
                                      int threads);
 
 // The q-quantile by linear interpolation between order statistics (Hyndman and Fan, Am. Stat. 50,
-// 1996, definition 7). `sorted` is increasing and not empty.
-double quantile(const std::vector<double>& sorted, double q);
+// 1996, definition 7). `values` is not empty; it is reordered.
+double quantile(std::vector<double>& values, double q);
 
 // For each element, the share of the margins' variance between boards that its own deviation
 // explains: the variance of the mean margin over classes of equal deviation (first-order index of
