@@ -44,6 +44,13 @@ OrderedJson element_json(const Slot& slot, double value) {
   return element;
 }
 
+OrderedJson ranking_json(const Ranking& ranking) {
+  OrderedJson out;
+  out["by"] = kRankWords[static_cast<std::size_t>(ranking.by)];
+  out["value"] = finite(ranking.value);
+  return out;
+}
+
 OrderedJson yield_json(const Yield& yield) {
   OrderedJson out;
   out["value"] = finite(yield.value);
@@ -148,12 +155,14 @@ OrderedJson design_json(const Design& design, const Problem& problem) {
   OrderedJson out;
   out["meets_goals"] = design.meets_goals;
   out["margin_db"] = finite(design.margin_db);
+  if (design.ranking) out["ranking"] = ranking_json(*design.ranking);
   if (design.yield) out["yield"] = yield_json(*design.yield);
   out["network"] = network_json(design.topology, design.values);
   out["goals"] = goals_json(design, problem);
   if (design.ideal) {
     out["ideal"]["margin_db"] = finite(design.ideal->margin_db);
     out["ideal"]["network"] = network_json(design.topology, design.ideal->values);
+    out["ideal"]["agreeing_starts"] = design.agreeing_starts;
   }
   if (design.margin_quantiles) out["tolerance"] = tolerance_json(design);
   out["stress"] = stress_json(design.stress);

@@ -27,6 +27,22 @@ OrderedJson unmatched_json(const Unmatched& unmatched) {
   return out;
 }
 
+constexpr const char* kLimitNote =
+    "No lossless network of any size can hold a better worst return loss in these bands, and no "
+    "passive network a better worst transducer gain. Loss can improve a return loss beyond this, "
+    "at the cost of efficiency.";
+
+OrderedJson limit_json(const MatchLimit& limit) {
+  OrderedJson out;
+  out["return_loss_db"] = limit.return_loss_db;
+  out["gain_db"] = limit.gain_db;
+  out["error_db"] = limit.error_db;
+  out["section"] = limit.section;
+  out["tight"] = limit.tight;
+  out["note"] = kLimitNote;
+  return out;
+}
+
 }  // namespace
 
 OrderedJson engine_json() {
@@ -59,6 +75,7 @@ std::string report_text(const Report& report, const JobRequest& request) {
   out["warnings"] = report.warnings;
   out["cautions"] = cautions();
   out["unmatched"] = unmatched_json(report.unmatched);
+  if (report.limit) out["limit"] = limit_json(*report.limit);
   out["designs"] = OrderedJson::array();
   int rank = 0;
   for (const Design& design : report.designs) {

@@ -6,6 +6,7 @@
 #include <string>
 #include <vector>
 
+#include "solver/limit/limit.h"
 #include "solver/rf/goal.h"
 #include "solver/rf/problem.h"
 #include "solver/rf/topology.h"
@@ -99,6 +100,7 @@ struct Report {
   int topologies = 0;
   int topologies_done = 0;
   Unmatched unmatched;
+  std::optional<MatchLimit> limit;  // nothing where any load can be matched, or if ended early
   std::vector<Design> designs;
   std::vector<std::string> warnings;
 };

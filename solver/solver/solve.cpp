@@ -6,6 +6,7 @@
 #include "solver/solver/candidates.h"
 #include "solver/solver/describe.h"
 #include "solver/solver/grids.h"
+#include "solver/solver/problem_limit.h"
 #include "solver/solver/solver.h"
 
 namespace bandwright {
@@ -80,7 +81,8 @@ std::vector<Design> describe_all(const Problem& problem, const std::vector<Candi
   return designs;
 }
 
-void add_warnings(const CandidateSet& set, Report& report) {
+void add_warnings(const Problem& problem, const CandidateSet& set, Report& report) {
+  if (report.limit) report.warnings = limit_warnings(problem, *report.limit);
   const bool any_met = std::any_of(report.designs.begin(), report.designs.end(),
                                    [](const Design& design) { return design.meets_goals; });
   if (!any_met) {
@@ -126,12 +128,13 @@ Report solve(const Problem& problem, int threads, RunControl& control) {
   const EndCause cause = control.cause();
   report.designs = describe_all(problem, ranked_candidates(problem, set), threads);
   report.unmatched = describe_unmatched(problem);
+  if (cause == EndCause::none) report.limit = problem_limit(problem, threads);
   report.stop_reason = stop_reason(cause, searched.converged);
   report.reproducible = cause == EndCause::none;
   report.evaluations = searched.evaluations + set.evaluations;
   report.topologies = static_cast<int>(problem.topologies.size());
   report.topologies_done = control.progress().topologies_done;
-  add_warnings(set, report);
+  add_warnings(problem, set, report);
   control.set_fraction(1);
   return report;
 }
