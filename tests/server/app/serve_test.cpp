@@ -23,6 +23,7 @@ const std::string kLongJob = R"({
   "load": {"circuit": {"series": [{"resistor_ohm": 20}, {"capacitor_f": "20pF"}]}},
   "template": {"ladder": {"min_elements": 2, "max_elements": 6, "kinds": ["inductor", "capacitor"]}},
   "goals": [{"quantity": "return_loss", "from_hz": "100MHz", "to_hz": "200MHz"}],
+  "search": {"effort": "thorough"},
   "budget": {"run_seconds": 600}
 })";
 
