@@ -70,8 +70,11 @@ def main():
         print(f"goal: {goal_text(goal)}")
     print(
         f"without a network: return loss {unmatched['return_loss_db']:.2f} dB "
-        f"at {megahertz(unmatched['at_hz'])}\n"
+        f"at {megahertz(unmatched['at_hz'])}"
     )
+    if "limit" in job:
+        print(f"limit of any lossless network: return loss {job['limit']['return_loss_db']:.2f} dB")
+    print()
     head = ["rank", "return loss", "margin", "yield (95 % interval)", "efficiency",
             "parts from the source to the load"]
     print(table([head] + [row(d) for d in designs]))
