@@ -129,12 +129,15 @@ double Ladder::smooth_margin_db(const double* values, int p, Scratch& scratch) c
   }
   double sum = 0;
   for (std::size_t g = 0; g < segments_.size(); ++g) {
-    const double* badness = scratch.badness.data() + segments_[g].first;
-    const int count = points_->segments[g].count;
-    const double factor = scale_[g];
-    for (int k = 0; k < count; ++k) {
-      double ratio = factor * std::max(badness[k], 0.0);
-      ratio = (equal_weights_ ? ratio : std::pow(ratio, weight_[g])) / top;
+    const Segment& segment = points_->segments[g];
+    const double* badness = scratch.badness.data() + segment.first;
+    if (equal_weights_) {
+      sum += kernel_power_sum(badness, points_->real.data() + segment.first, segment.padded,
+                              scale_[g] / top, p);
+      continue;
+    }
+    for (int k = 0; k < segment.count; ++k) {
+      double ratio = std::pow(scale_[g] * std::max(badness[k], 0.0), weight_[g]) / top;
       for (int power = 2; power < p; power *= 2) ratio *= ratio;
       sum += ratio;
     }

@@ -114,6 +114,27 @@ void points_impl(const KernelTask& task, const double* x, double* badness, doubl
   run(task, x, badness, worst);
 }
 
+double power_sum_impl(const double* badness, const double* mask, int padded, double scale,
+                      int power) {
+  const D d;
+  const V factor = hn::Set(d, scale), zero = hn::Zero(d);
+  V sum[kVectors];
+  for (int k = 0; k < kVectors; ++k) sum[k] = zero;
+  for (int at = 0; at < padded; at += kLanes) {
+    V ratio[kVectors];
+    for (int k = 0; k < kVectors; ++k) {
+      ratio[k] = hn::Mul(factor, hn::Max(load(badness, at, k), zero));
+    }
+    for (int p = 2; p < power; p *= 2) {
+      for (int k = 0; k < kVectors; ++k) ratio[k] = hn::Mul(ratio[k], ratio[k]);
+    }
+    for (int k = 0; k < kVectors; ++k) sum[k] = hn::MulAdd(load(mask, at, k), ratio[k], sum[k]);
+  }
+  V total = sum[0];
+  for (int k = 1; k < kVectors; ++k) total = hn::Add(total, sum[k]);
+  return hn::GetLane(hn::SumOfLanes(d, total));
+}
+
 const char* name_impl() {
   return hwy::TargetName(HWY_TARGET);
 }
@@ -127,6 +148,7 @@ namespace bandwright {
 
 HWY_EXPORT(worst_impl);
 HWY_EXPORT(points_impl);
+HWY_EXPORT(power_sum_impl);
 HWY_EXPORT(name_impl);
 
 void kernel_worst(const KernelTask& task, const double* x, double* worst) {
@@ -135,6 +157,11 @@ void kernel_worst(const KernelTask& task, const double* x, double* worst) {
 
 void kernel_points(const KernelTask& task, const double* x, double* badness, double* worst) {
   HWY_DYNAMIC_DISPATCH(points_impl)(task, x, badness, worst);
+}
+
+double kernel_power_sum(const double* badness, const double* mask, int padded, double scale,
+                        int power) {
+  return HWY_DYNAMIC_DISPATCH(power_sum_impl)(badness, mask, padded, scale, power);
 }
 
 const char* kernel_instruction_set() {

@@ -59,6 +59,11 @@ void kernel_worst(const KernelTask& task, const double* x, double* worst);
 // Also writes the badness of every point to `badness` (one for each point, padding included).
 void kernel_points(const KernelTask& task, const double* x, double* badness, double* worst);
 
+// The sum over `padded` points of mask * (scale * badness)^(power / 2), negative badness counting
+// as none. `power` is 2, 4, 8, ...; `padded` a multiple of kLanes.
+double kernel_power_sum(const double* badness, const double* mask, int padded, double scale,
+                        int power);
+
 // The instruction set in use, for reports: "AVX2", "portable", ...
 const char* kernel_instruction_set();
 

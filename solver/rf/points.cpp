@@ -46,7 +46,7 @@ PointSet::PointSet(const Problem& problem, const GoalGrid& grid) : goals(problem
   }
   frequency_hz.resize(points);
   for (AlignedArray* array :
-       {&voltage_re, &voltage_im, &current_re, &current_im, &source_re, &source_im}) {
+       {&voltage_re, &voltage_im, &current_re, &current_im, &source_re, &source_im, &real}) {
     *array = AlignedArray(points);
   }
   for (const Segment& segment : segments) {
@@ -62,6 +62,7 @@ PointSet::PointSet(const Problem& problem, const GoalGrid& grid) : goals(problem
       current_im[at] = scaled.wave.current.imag();
       source_re[at] = zs.real();
       source_im[at] = zs.imag();
+      real[at] = k < segment.count ? 1 : 0;
       source_real = source_real && zs.imag() == 0;
       load_passive = load_passive && scaled.passive;
     }

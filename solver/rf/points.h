@@ -32,6 +32,7 @@ struct PointSet {
   std::vector<double> frequency_hz;  // of every point, padding included
   AlignedArray voltage_re, voltage_im, current_re, current_im;
   AlignedArray source_re, source_im;
+  AlignedArray real;    // 1 for a point, 0 for padding
   int points = 0;       // padding included
   int real_points = 0;  // without padding
   bool source_real = true;

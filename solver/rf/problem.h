@@ -42,6 +42,7 @@ struct Problem {
   SearchRequest search;
   double drive_w = 1;
   RankBy rank_by = RankBy::yield;
+  bool wants_limit = true;  // report the physical limit too
 };
 
 // Geometric mean of all goal bands' edges, Hz: where default value ranges are taken.

@@ -15,7 +15,7 @@ struct Plan {
   int starts;
   int kicks;
 };
-constexpr Plan kPlans[] = {{1, 0},    {8, 0},    {16, 2},    {32, 4},   {56, 12},
+constexpr Plan kPlans[] = {{1, 0},    {4, 0},    {8, 2},     {16, 4},   {48, 12},
                            {112, 32}, {240, 96}, {320, 160}, {400, 240}};
 // Share of the plan spent after each round, and how far behind the leader a topology may be to
 // take part in the next.

@@ -12,6 +12,8 @@ constexpr double kAgreeDb = 0.05;
 // second-best topologies of a ranking are good ones too.
 constexpr double kSlackDb = 0.02;
 constexpr int kStageEvaluations = 300;
+// Dips of the margin within this of the worst take part in the final sharpening.
+constexpr double kNearDb = 1.0;
 
 struct Stage {
   int power;
@@ -25,6 +27,25 @@ double additive_root(int dimension) {
   double x = 1.5;
   for (int i = 0; i < 60; ++i) x = std::pow(1 + x, 1.0 / (dimension + 1));
   return x;
+}
+
+// The dips of the margin near the worst one, each with its neighbours: what linear models need to
+// see. The other points stay where they are while the end is sharpened.
+std::vector<int> points_near_worst(const PointSet& points, const std::vector<double>& margins,
+                                   double least_db) {
+  std::vector<int> near;
+  for (const Segment& segment : points.segments) {
+    const int last = segment.first + segment.count - 1;
+    const auto dip = [&](int k) {
+      return k >= segment.first && k <= last && margins[k] < least_db + kNearDb &&
+             (k == segment.first || margins[k] <= margins[k - 1]) &&
+             (k == last || margins[k] <= margins[k + 1]);
+    };
+    for (int k = segment.first; k <= last; ++k) {
+      if (dip(k - 1) || dip(k) || dip(k + 1)) near.push_back(k);
+    }
+  }
+  return near;
 }
 
 }  // namespace
@@ -149,15 +170,9 @@ Polished polish(const Topology& topology, const Values& values, const PointSet& 
     };
     offer(maximise(objective, point, {LocalMethod::principal_axis, 0.02, 1e-5, 600, seed + power}));
   }
-  // The linear models see only points near the worst: the others stay where they are.
   std::vector<double> margins(points.points);
   const double least = ladder.point_margins_db(out.values.data(), margins.data(), scratch);
-  std::vector<int> near;
-  for (const Segment& segment : points.segments) {
-    for (int k = segment.first; k < segment.first + segment.count; ++k) {
-      if (margins[k] < least + 1.0) near.push_back(k);
-    }
-  }
+  const std::vector<int> near = points_near_worst(points, margins, least);
   const LocalMargins near_margins = [&](const double* at, double* to) {
     const double penalty = space.to_values(at, work.data());
     ladder.point_margins_db(work.data(), margins.data(), scratch);

@@ -19,9 +19,9 @@ namespace {
 constexpr double kNone = -std::numeric_limits<double>::infinity();
 // A searched margin may still rise by this much when it is finished.
 constexpr double kUnfinishedDb = 0.3;
-// Topologies handled between two looks at the bar; not a thread count, so that threads change
-// nothing.
-constexpr std::size_t kBatch = 8;
+// Topologies handled between two looks at the bar: as many as designs are wanted, within these.
+// Not a thread count, so that threads change nothing.
+constexpr int kLeastBatch = 2, kMostBatch = 8;
 // Choices of one topology that centring starts from.
 constexpr int kCentreStarts = 16;
 constexpr int kCentreBoards = 4000;
@@ -96,11 +96,12 @@ class Chooser {
                   has_bounds(problem.goals)) {}
 
   CandidateSet run() {
-    for (std::size_t from = 0; from < searched_.ranked.size(); from += kBatch) {
+    const std::size_t batch = std::clamp(problem_.search.designs, kLeastBatch, kMostBatch);
+    for (std::size_t from = 0; from < searched_.ranked.size(); from += batch) {
       const double bar = bar_db();
       if (searched_.ranked[from].margin_db + kUnfinishedDb <= bar) break;
       if (from > 0 && control_.should_end()) break;
-      run_batch(from, std::min(from + kBatch, searched_.ranked.size()), bar);
+      run_batch(from, std::min(from + batch, searched_.ranked.size()), bar);
     }
     return std::move(out_);
   }

@@ -13,7 +13,7 @@ namespace bandwright {
 namespace {
 
 constexpr int kStressPoints = 51;
-constexpr int kMostBandBoards = 1000;
+constexpr int kMostBandBoards = 500;
 constexpr double kLeastEfficiencyDb = -200;
 
 double floor_db(double ratio) {

@@ -128,7 +128,8 @@ Report solve(const Problem& problem, int threads, RunControl& control) {
   const EndCause cause = control.cause();
   report.designs = describe_all(problem, ranked_candidates(problem, set), threads);
   report.unmatched = describe_unmatched(problem);
-  if (cause == EndCause::none) report.limit = problem_limit(problem, threads);
+  if (problem.wants_limit && cause == EndCause::none)
+    report.limit = problem_limit(problem, threads);
   report.stop_reason = stop_reason(cause, searched.converged);
   report.reproducible = cause == EndCause::none;
   report.evaluations = searched.evaluations + set.evaluations;
