@@ -6,8 +6,8 @@
 //   series or shunt, linear               x a, x b, then 4 multiply-adds              10
 //   series, affine                        x a + c, x b + d, then 4 multiply-adds      12
 //   shunt, affine                         the same and one reciprocal of a complex    18
-//   lossless at the source                |V + Zs I|^2                                11
-//   lossy at the source                   |V - conj(Zs) I|^2 / |V + Zs I|^2           23
+//   lossless at a real source             |V + Zs I|^2                                 7
+//   lossy at a real source                |V - Zs I|^2 / |V + Zs I|^2                 15
 #pragma once
 
 #include "solver/rf/ladder.h"
@@ -30,9 +30,9 @@ inline int step_operations(KernelStep::Op op) {
   return 18;
 }
 
-// For one margin of a network under a return-loss goal.
+// For one margin of a network under a return-loss goal, with a real source.
 inline int operations_per_point(const Ladder& ladder, bool lossless) {
-  int count = lossless ? 11 : 23;
+  int count = lossless ? 7 : 15;
   for (int i = 0; i < ladder.slots(); ++i) count += step_operations(ladder.step(i).op);
   return count;
 }
