@@ -5,6 +5,7 @@
 #include <memory>
 
 #include "solver/base/parallel.h"
+#include "solver/search/growth.h"
 #include "solver/search/topology_search.h"
 
 namespace bandwright {
@@ -74,6 +75,7 @@ class Race {
       control_.set_fraction(0.2 * (round + 1));
       thin_out(kGapsDb[round]);
     }
+    grow_from_smaller();
     const bool converged = settle_leaders();
     return outcome(converged);
   }
@@ -88,23 +90,24 @@ class Race {
     return *searches_[i];
   }
 
-  // Gives every topology in the field `starts` and `kicks` more.
+  // Does `work` for every topology in the field, on all threads.
   template <class Work>
-  void for_field(const Work& work) {
+  void for_each(const Work& work) {
     parallel_for(threads_, field_.size(), [&](std::size_t k) {
       const int i = field_[k];
       // The very first topology is always looked at, so that there is a best so far.
       if (control_.should_end() && !(k == 0 && !searches_[i])) return;
       TopologySearch& s = search(i);
       const std::uint64_t before = s.evaluations();
-      work(s);
+      work(i);
       control_.add_evaluations(s.evaluations() - before);
       control_.offer_margin_db(s.best_margin_db());
     });
   }
 
   void first_look() {
-    for_field([&](TopologySearch& s) {
+    for_each([&](int i) {
+      TopologySearch& s = *searches_[i];
       s.run(std::min(4, plan(s).starts), 0, TopologySearch::kNone, control_);
       control_.topology_done();
     });
@@ -116,7 +119,8 @@ class Race {
   }
 
   void run_round(double share) {
-    for_field([&](TopologySearch& s) {
+    for_each([&](int i) {
+      TopologySearch& s = *searches_[i];
       const Plan whole = plan(s);
       const int starts = static_cast<int>(std::ceil(whole.starts * share)) - s.starts();
       const int kicks = share == 1.0 ? whole.kicks : 0;
@@ -145,6 +149,31 @@ class Race {
     std::sort(field_.begin(), field_.end());
   }
 
+  // Each topology still in the field climbs once more from every smaller one that it contains.
+  // The starts are taken before any of them is used, so that the order of work does not matter.
+  void grow_from_smaller() {
+    std::vector<std::vector<Values>> starts(searches_.size());
+    for (int i : field_) starts[i] = smaller_optima(i);
+    for_each([&](int i) {
+      for (const Values& start : starts[i]) searches_[i]->run_from(start);
+    });
+  }
+
+  std::vector<Values> smaller_optima(int larger) const {
+    std::vector<Values> out;
+    const Topology& topology = problem_.topologies[larger];
+    for (int slot = 0; slot < static_cast<int>(topology.slots.size()); ++slot) {
+      if (topology.slots[slot].fixed()) continue;
+      const Topology smaller = one_less(topology, slot);
+      for (std::size_t k = 0; k < searches_.size(); ++k) {
+        if (!searches_[k] || !searches_[k]->found()) continue;
+        if (!same_slots(problem_.topologies[k], smaller)) continue;
+        out.push_back(grown(topology, slot, searches_[k]->best_values()));
+      }
+    }
+    return out;
+  }
+
   bool leader_agreed() const {
     const double leader = leader_db();
     return std::any_of(field_.begin(), field_.end(), [&](int i) {
@@ -157,7 +186,8 @@ class Race {
   bool settle_leaders() {
     thin_out(kLeaderGapDb);
     for (int extra = 0; extra < kExtraPlans && !leader_agreed(); ++extra) {
-      for_field([&](TopologySearch& s) {
+      for_each([&](int i) {
+        TopologySearch& s = *searches_[i];
         if (s.agreeing_starts() >= kWantedAgreement) return;
         s.run(plan(s).starts, plan(s).kicks, TopologySearch::kNone, control_);
       });
