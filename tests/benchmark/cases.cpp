@@ -57,6 +57,7 @@ Problem antenna_problem(const Antenna& antenna) {
   problem.goals = {Goal{GoalQuantity::return_loss, GoalBound::at_least, antenna.from_hz,
                         antenna.to_hz, antenna.goal_db, 1}};
   problem.rank_by = RankBy::margin;
+  problem.wants_limit = false;
   return problem;
 }
 

@@ -31,6 +31,7 @@ Part real_capacitor();
 Part part_with_q(double q);
 
 // A problem with one return-loss goal of at least `goal_db`, a 50 ohm source and no topologies yet.
+// Ranked by margin, without the physical limit.
 Problem antenna_problem(const Antenna& antenna);
 // Every alternating ladder of `least` to `most` inductors and capacitors.
 std::vector<Topology> ladders(const Problem& problem, int least, int most, const Part& inductor,

@@ -82,6 +82,7 @@ void rows_of(const std::vector<TheoryCase>& cases, const Circuit& load, Place ne
     problem.tolerance.samples = 0;
     problem.rank_by = RankBy::margin;
     problem.search.designs = 1;
+    problem.wants_limit = false;
     table.row({c.name, c.return_loss_db, kSlackDb, 1.0}, settings.seeds(20),
               [&](std::uint64_t seed) {
                 const Solved solved = solve_timed(problem, seed, settings);

@@ -88,8 +88,8 @@ def whole_job(engine, turns):
                          f"{ratio:.0f}", "100", verdict(ratio, 100 if good else np.inf),
                          f"{mine['return_loss_db']:.3f}", f"{result['return_loss_db']:.3f}",
                          f"{mine['yield']:.4f}", f"{result['yield']:.4f}"))
-        print(f"\n{antenna}: the same job with five designs described {median(five):.3f} s; one "
-              f"design on two threads {median(two):.3f} s on the clock.")
+        print(f"\n{antenna}: the same job with five designs and the physical limit "
+              f"{median(five):.3f} s; one design on two threads {median(two):.3f} s on the clock.")
     table("A whole job: every ladder of 3 elements, E24, 10,000 boards; seconds, one core",
           ("load", "SciPy side", "engine s", "SciPy s", "ratio", "target", "",
            "engine dB", "SciPy dB", "engine yield", "SciPy yield"), rows)
