@@ -1,5 +1,5 @@
 #!/bin/sh
-# Builds and prints the quality table; fails if a target is missed. About 20 minutes on two cores.
+# Builds and prints the quality table; fails if a target is missed. About 5 minutes on two cores.
 #
 # Usage: tests/benchmark/quality.sh [--quick] [build folder]
 set -eu
