@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <numbers>
 
 #include "solver/rf/element_model.h"
 
@@ -33,7 +34,7 @@ KernelStep::Op step_op(Place place, bool lossless, bool affine) {
 }
 
 double decibels(double power_ratio) {
-  return 10 * std::log10(power_ratio);
+  return 10 / std::numbers::ln10 * std::log(power_ratio);
 }
 
 }  // namespace
@@ -82,7 +83,8 @@ Ladder::Ladder(const Topology& topology, const PointSet& points) : points_(&poin
            points.current_im.data(),
            points.source_re.data(),
            points.source_im.data(),
-           points.source_real};
+           points.source_real,
+           points.source_real && is_alternating(steps_.data(), n)};
 }
 
 Ladder::Scratch Ladder::make_scratch() const {

@@ -94,9 +94,68 @@ HWY_INLINE double worst_of(const KernelTask& t, const KernelSegment& segment, Ba
   return segment_worst<Badness::transferred, kRealSource>(t, segment, x, badness);
 }
 
+// The common case with nothing left to decide in the loop: lossless elements, series and shunt in
+// turn, a real source. Reads D, and with kStore keeps every point's 1 - 1/D.
+template <int kSteps, bool kSeriesFirst, bool kStore>
+HWY_NOINLINE double alternating_worst(const KernelTask& t, const KernelSegment& segment,
+                                      const double* x, double* badness) {
+  const D d;
+  const V one = hn::Set(d, 1.0);
+  V most[kVectors];
+  for (int k = 0; k < kVectors; ++k) most[k] = hn::Set(d, -1e300);
+  for (int at = segment.first; at < segment.first + segment.padded; at += kLanes) {
+    for (int k = 0; k < kVectors; ++k) {
+      V v_re = load(t.voltage_re, at, k), v_im = load(t.voltage_im, at, k);
+      V i_re = load(t.current_re, at, k), i_im = load(t.current_im, at, k);
+      for (int n = 0; n < kSteps; ++n) {
+        const V b = hn::Mul(hn::Set(d, x[n]), load(t.steps[n].b, at, k));
+        if ((n % 2 == 0) == kSeriesFirst) {
+          v_re = hn::NegMulAdd(b, i_im, v_re);
+          v_im = hn::MulAdd(b, i_re, v_im);
+        } else {
+          i_re = hn::NegMulAdd(b, v_im, i_re);
+          i_im = hn::MulAdd(b, v_re, i_im);
+        }
+      }
+      const V zr = load(t.source_re, at, k);
+      const V re = hn::MulAdd(zr, i_re, v_re), im = hn::MulAdd(zr, i_im, v_im);
+      V value = hn::MulAdd(re, re, hn::Mul(im, im));
+      if (kStore) {
+        value = hn::Sub(one, hn::Div(one, value));
+        hn::StoreU(value, d, badness + at + k * kVectorLanes);
+      }
+      most[k] = hn::Max(most[k], value);
+    }
+  }
+  V all = most[0];
+  for (int k = 1; k < kVectors; ++k) all = hn::Max(all, most[k]);
+  return hn::GetLane(hn::MaxOfLanes(d, all));
+}
+
+template <int kSteps, bool kStore>
+HWY_INLINE double alternating_of(const KernelTask& t, const KernelSegment& segment, const double* x,
+                                 double* badness) {
+  if (t.step_count < kSteps) {
+    return alternating_of<(kSteps > 1 ? kSteps - 1 : 1), kStore>(t, segment, x, badness);
+  }
+  return t.steps[0].op == KernelStep::Op::series_reactance
+             ? alternating_worst<kSteps, true, kStore>(t, segment, x, badness)
+             : alternating_worst<kSteps, false, kStore>(t, segment, x, badness);
+}
+
+HWY_INLINE double alternating_badness(const KernelTask& t, const KernelSegment& segment,
+                                      const double* x, double* badness) {
+  if (badness != nullptr) return alternating_of<kMostAlternating, true>(t, segment, x, badness);
+  return 1.0 - 1.0 / alternating_of<kMostAlternating, false>(t, segment, x, nullptr);
+}
+
 HWY_INLINE void run(const KernelTask& t, const double* x, double* badness, double* worst) {
   for (int g = 0; g < t.segment_count; ++g) {
     const KernelSegment& segment = t.segments[g];
+    if (t.alternating && segment.badness == Badness::reflected_from_gain) {
+      worst[g] = alternating_badness(t, segment, x, badness);
+      continue;
+    }
     // When no point's figure is kept, D stands in for 1 - 1/D, which rises with it.
     const bool from_gain = badness == nullptr && segment.badness == Badness::reflected_from_gain;
     const Badness kind = from_gain ? Badness::lost : segment.badness;
@@ -150,6 +209,16 @@ HWY_EXPORT(worst_impl);
 HWY_EXPORT(points_impl);
 HWY_EXPORT(power_sum_impl);
 HWY_EXPORT(name_impl);
+
+bool is_alternating(const KernelStep* steps, int count) {
+  using Op = KernelStep::Op;
+  if (count < 1 || count > kMostAlternating) return false;
+  for (int k = 0; k < count; ++k) {
+    if (steps[k].op != Op::series_reactance && steps[k].op != Op::shunt_susceptance) return false;
+    if (k > 0 && steps[k].op == steps[k - 1].op) return false;
+  }
+  return true;
+}
 
 void kernel_worst(const KernelTask& task, const double* x, double* worst) {
   HWY_DYNAMIC_DISPATCH(worst_impl)(task, x, worst);

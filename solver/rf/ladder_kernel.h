@@ -51,7 +51,14 @@ struct KernelTask {
   const double *current_re = nullptr, *current_im = nullptr;
   const double *source_re = nullptr, *source_im = nullptr;
   bool real_source = false;  // source_im is zero everywhere
+  bool alternating = false;  // as is_alternating() says, with a real source
 };
+
+// Longest ladder that has a loop of its own.
+inline constexpr int kMostAlternating = 8;
+
+// True for 1 to kMostAlternating lossless steps, series and shunt in turn.
+bool is_alternating(const KernelStep* steps, int count);
 
 // Writes each segment's largest badness to `worst` (segment_count long). `x` holds one factor for
 // each step.

@@ -14,6 +14,9 @@ constexpr double kSlackDb = 0.02;
 constexpr int kStageEvaluations = 300;
 // Dips of the margin within this of the worst take part in the final sharpening.
 constexpr double kNearDb = 1.0;
+// Sharpening is repeated with the dips as they then are, while it gains this much.
+constexpr int kSharpenRounds = 4;
+constexpr double kSharpenedDb = 2e-4;
 
 struct Stage {
   int power;
@@ -171,15 +174,18 @@ Polished polish(const Topology& topology, const Values& values, const PointSet& 
     offer(maximise(objective, point, {LocalMethod::principal_axis, 0.02, 1e-5, 600, seed + power}));
   }
   std::vector<double> margins(points.points);
-  const double least = ladder.point_margins_db(out.values.data(), margins.data(), scratch);
-  const std::vector<int> near = points_near_worst(points, margins, least);
-  const LocalMargins near_margins = [&](const double* at, double* to) {
-    const double penalty = space.to_values(at, work.data());
-    ladder.point_margins_db(work.data(), margins.data(), scratch);
-    for (std::size_t i = 0; i < near.size(); ++i) to[i] = margins[near[i]] - penalty;
-  };
-  offer(maximise_least(near_margins, static_cast<int>(near.size()), point,
-                       {LocalMethod::simplex, 0.005, 1e-6, 600, seed}));
+  for (int round = 0; round < kSharpenRounds; ++round) {
+    const double before = ladder.point_margins_db(out.values.data(), margins.data(), scratch);
+    const std::vector<int> near = points_near_worst(points, margins, before);
+    const LocalMargins near_margins = [&](const double* at, double* to) {
+      const double penalty = space.to_values(at, work.data());
+      ladder.point_margins_db(work.data(), margins.data(), scratch);
+      for (std::size_t i = 0; i < near.size(); ++i) to[i] = margins[near[i]] - penalty;
+    };
+    offer(maximise_least(near_margins, static_cast<int>(near.size()), point,
+                         {LocalMethod::simplex, round == 0 ? 0.005 : 0.02, 1e-6, 600, seed}));
+    if (out.margin_db < before + kSharpenedDb) break;
+  }
   return out;
 }
 

@@ -8,8 +8,8 @@
 namespace bandwright {
 namespace {
 
-// Beside a job's designs the last hundredths of a dB are not worth half a second.
-constexpr LimitOptions kInPassing{3, 0.05};
+// Beside a job's designs the last tenth of a dB is not worth more time than the search takes.
+constexpr LimitOptions kInPassing{2, 0.05};
 
 bool asks_for_match(const Goal& goal) {
   return goal.bound != GoalBound::at_most;

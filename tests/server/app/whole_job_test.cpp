@@ -25,19 +25,19 @@ std::optional<TestResponse> post(const Daemon& daemon, const std::string& path,
                               std::to_string(body.size()) + "\r\n\r\n" + body);
 }
 
-Json get_json(const Daemon& daemon, const std::string& path) {
-  const auto answer = ask(daemon.port, "GET " + path + " HTTP/1.1\r\nHost: localhost\r\n\r\n");
+Json get_json(const Daemon& daemon, const std::string& path, const std::string& fields = "") {
+  const auto answer =
+      ask(daemon.port, "GET " + path + " HTTP/1.1\r\nHost: localhost\r\n" + fields + "\r\n");
   REQUIRE(answer);
   REQUIRE_MESSAGE(answer->status == 200, answer->body);
   return Json::parse(answer->body);
 }
 
-// The job's document once it has ended.
+// The job's document once it has ended. Few requests: nobody reads the daemon's log meanwhile.
 Json wait_until_done(const Daemon& daemon, const std::string& path) {
-  for (int i = 0; i < 6000; ++i) {
-    Json job = get_json(daemon, path);
+  for (int i = 0; i < 20; ++i) {
+    Json job = get_json(daemon, path, "Prefer: wait=5\r\n");
     if (job.at("done") == true) return job;
-    std::this_thread::sleep_for(std::chrono::milliseconds(10));
   }
   FAIL("the job never ended");
   return {};
@@ -92,7 +92,9 @@ TEST_CASE("a job whose process is killed while it runs ends after the next start
     REQUIRE(accepted);
     REQUIRE_MESSAGE(accepted->status == 202, accepted->body);
     path = accepted->header("location").value();
-    while (get_json(daemon, path).at("state") == "queued") std::this_thread::yield();
+    while (get_json(daemon, path).at("state") == "queued") {
+      std::this_thread::sleep_for(std::chrono::milliseconds(10));
+    }
     CHECK(get_json(daemon, path).at("state") == "running");
     daemon.process.signal(SIGKILL);
     CHECK(daemon.process.wait() == 1000 + SIGKILL);
