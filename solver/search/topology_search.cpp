@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <set>
 
 namespace bandwright {
 namespace {
@@ -14,6 +15,8 @@ constexpr double kSlackDb = 0.02;
 constexpr int kStageEvaluations = 300;
 // Dips of the margin within this of the worst take part in the final sharpening.
 constexpr double kNearDb = 1.0;
+// A dip is watched over one part in this many of its band to either side.
+constexpr int kReachShare = 32;
 // Sharpening is repeated with the dips as they then are, while it gains this much.
 constexpr int kSharpenRounds = 4;
 constexpr double kSharpenedDb = 2e-4;
@@ -32,23 +35,26 @@ double additive_root(int dimension) {
   return x;
 }
 
-// The dips of the margin near the worst one, each with its neighbours: what linear models need to
-// see. The other points stay where they are while the end is sharpened.
+// The dips of the margin near the worst one, each with points around it out to where the dip may
+// move: what linear models need to see. The rest of the band stays where it is meanwhile.
 std::vector<int> points_near_worst(const PointSet& points, const std::vector<double>& margins,
                                    double least_db) {
-  std::vector<int> near;
+  std::set<int> near;
   for (const Segment& segment : points.segments) {
-    const int last = segment.first + segment.count - 1;
-    const auto dip = [&](int k) {
-      return k >= segment.first && k <= last && margins[k] < least_db + kNearDb &&
-             (k == segment.first || margins[k] <= margins[k - 1]) &&
-             (k == last || margins[k] <= margins[k + 1]);
-    };
-    for (int k = segment.first; k <= last; ++k) {
-      if (dip(k - 1) || dip(k) || dip(k + 1)) near.push_back(k);
+    const int first = segment.first, last = segment.first + segment.count - 1;
+    const int reach = std::max(4, segment.count / kReachShare);
+    for (int k = first; k <= last; ++k) {
+      const bool dip = margins[k] < least_db + kNearDb &&
+                       (k == first || margins[k] <= margins[k - 1]) &&
+                       (k == last || margins[k] <= margins[k + 1]);
+      if (!dip) continue;
+      for (int offset : {0, reach / 4, reach / 2, reach}) {
+        near.insert(std::max(first, k - offset));
+        near.insert(std::min(last, k + offset));
+      }
     }
   }
-  return near;
+  return {near.begin(), near.end()};
 }
 
 }  // namespace
